@@ -1,0 +1,1 @@
+"""One row per person (and visit); who is missing what, and why."""

@@ -1,0 +1,1 @@
+"""Does social position go with brain organisation?"""

@@ -1,0 +1,1 @@
+"""Networks to numbers with a passport."""

@@ -1,0 +1,1 @@
+"""Scale-free numerics: they know arrays only."""

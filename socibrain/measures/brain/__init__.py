@@ -1,0 +1,1 @@
+"""Brain organisation, one idea per file."""

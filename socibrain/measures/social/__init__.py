@@ -1,0 +1,1 @@
+"""Social position, one idea per file."""

@@ -1,0 +1,1 @@
+"""Raw records to checked, immutable networks."""

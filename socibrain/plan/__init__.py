@@ -1,0 +1,1 @@
+"""Plan file to frozen options."""

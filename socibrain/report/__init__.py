@@ -1,0 +1,1 @@
+"""Words, tables, figures; computes no statistics."""

@@ -1,0 +1,1 @@
+"""Files to raw records: the only rooms that know input formats."""

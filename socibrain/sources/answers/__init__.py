@@ -1,0 +1,1 @@
+"""Questionnaire answers, one file per layout."""

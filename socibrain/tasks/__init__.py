@@ -1,0 +1,1 @@
+"""Runs many tasks and remembers finished work."""
