@@ -1,0 +1,118 @@
+"""Text tables (TSV, CSV) as text, cell by cell, with line numbers kept for faults."""
+
+from __future__ import annotations
+
+import csv
+import io
+from collections import Counter
+from collections.abc import Iterator
+from dataclasses import dataclass
+from pathlib import Path
+
+from socibrain.documents import nearest
+from socibrain.errors import Faults
+
+MISSING = "n/a"
+"""How a missing cell is written (BIDS); an empty cell is missing too."""
+
+
+@dataclass(frozen=True)
+class TextTable:
+    """A table whose cells are text exactly as written (stripped of outer spaces).
+
+    ``lines[r]`` is the line of the file on which row r starts (the header is line 1).
+    """
+
+    file: str
+    columns: tuple[str, ...]
+    rows: tuple[tuple[str, ...], ...]
+    lines: tuple[int, ...]
+
+    def column(self, name: str) -> tuple[str, ...]:
+        """All cells of one column."""
+        position = self.columns.index(name)
+        return tuple(row[position] for row in self.rows)
+
+    def __iter__(self) -> Iterator[tuple[int, dict[str, str]]]:
+        for line, row in zip(self.lines, self.rows, strict=True):
+            yield line, dict(zip(self.columns, row, strict=True))
+
+
+def is_missing(cell: str) -> bool:
+    """Whether a cell says that there is no value.
+
+    >>> is_missing("n/a"), is_missing(""), is_missing("NA")
+    (True, True, False)
+    """
+    return cell in ("", MISSING)
+
+
+def read_table(path: Path, shown: str, needed: tuple[str, ...], faults: Faults) -> TextTable | None:
+    """Read a tab- or comma-separated table (by suffix) with a header row.
+
+    ``shown`` is the path as the study writes it, ``needed`` the columns that must be there.
+    Returns None when the file cannot be used; every reason is then in ``faults``.
+    """
+    text = read_text(path, shown, faults)
+    if text is None:
+        return None
+    separator = "," if path.suffix.lower() == ".csv" else "\t"
+    reader = csv.reader(io.StringIO(text, newline=""), delimiter=separator, strict=True)
+    rows: list[tuple[int, list[str]]] = []
+    start = 1
+    try:
+        for cells in reader:
+            if any(cell.strip() for cell in cells):
+                rows.append((start, [cell.strip() for cell in cells]))
+            start = reader.line_num + 1
+    except csv.Error as error:
+        faults.add(shown, f"line {reader.line_num}", "table", f"cannot be split into cells ({error})",
+                   "close every quotation mark; use one separator throughout")  # fmt: skip
+        return None
+    if not rows:
+        faults.add(shown, "", "empty", "is empty", "write a header line and one row per entry")
+        return None
+    return _checked(shown, rows, needed, faults)
+
+
+def read_text(path: Path, shown: str, faults: Faults) -> str | None:
+    """The text of a UTF-8 file, or None with the reason in ``faults``."""
+    try:
+        return path.read_text(encoding="utf-8-sig")
+    except FileNotFoundError:
+        faults.add(shown, "", "missing-file", "there is no such file", "correct the path in the study file")
+    except OSError as error:
+        faults.add(shown, "", "unreadable", f"cannot be read ({error.strerror})", "check its permissions")
+    except UnicodeDecodeError as error:
+        line = path.read_bytes()[: error.start].count(b"\n") + 1
+        faults.add(shown, f"line {line}", "encoding", "is not UTF-8 text", "save the file as UTF-8")
+    return None
+
+
+def _checked(
+    shown: str, rows: list[tuple[int, list[str]]], needed: tuple[str, ...], faults: Faults
+) -> TextTable | None:
+    header = rows[0][1]
+    sound = True
+    for name, times in Counter(header).items():
+        if times > 1:
+            sound = False
+            faults.add(shown, "line 1", "duplicate-column", f"column '{name}' stands {times} times",
+                       "give every column a name of its own")  # fmt: skip
+    for name in needed:
+        if name not in header:
+            sound = False
+            faults.add(shown, "line 1", "missing-column", f"there is no column '{name}'",
+                       nearest(name, [cell for cell in header if cell]))  # fmt: skip
+    for line, cells in rows[1:]:
+        if len(cells) != len(header):
+            sound = False
+            faults.add(shown, f"line {line}", "ragged",
+                       f"has {len(cells)} cells where the header has {len(header)}",
+                       "write one cell per column, n/a where there is no value")  # fmt: skip
+    if not sound:
+        return None
+    body = rows[1:]
+    return TextTable(
+        shown, tuple(header), tuple(tuple(cells) for _, cells in body), tuple(line for line, _ in body)
+    )
