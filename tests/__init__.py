@@ -1,0 +1,1 @@
+"""Mirrors the rooms of the house; outside truth lies in references/."""
