@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import csv
 import io
+import re
 from collections import Counter
-from collections.abc import Iterator
+from collections.abc import Collection, Iterator
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -14,6 +15,9 @@ from socibrain.errors import Faults
 
 MISSING = "n/a"
 """How a missing cell is written (BIDS); an empty cell is missing too."""
+
+_NUMBER = re.compile(r"[+-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?")
+_ZEROS = re.compile(r"(?<![0-9])0+(?=[0-9])")
 
 
 @dataclass(frozen=True)
@@ -47,6 +51,34 @@ def is_missing(cell: str) -> bool:
     return cell in ("", MISSING)
 
 
+def as_number(cell: str) -> float | None:
+    """The number that a cell spells in plain digits, or None when it spells none.
+
+    >>> as_number("-1.5e3"), as_number("1,5"), as_number("nan")
+    (-1500.0, None, None)
+    """
+    return float(cell) if _NUMBER.fullmatch(cell) else None
+
+
+def loose_form(label: str) -> str:
+    """What is left of an id or label when case and leading zeros do not count.
+
+    >>> loose_form("Sub-007") == loose_form("sub-7"), loose_form("10") == loose_form("1")
+    (True, False)
+    """
+    return _ZEROS.sub("", label.casefold())
+
+
+def lookalike(label: str, known: Collection[str]) -> str | None:
+    """The known label that differs from this one by case or leading zeros only, if there is one.
+
+    >>> lookalike("sub-7", ["sub-007", "sub-008"])
+    'sub-007'
+    """
+    loose = loose_form(label)
+    return next((other for other in known if loose_form(other) == loose), None)
+
+
 def read_table(path: Path, shown: str, needed: tuple[str, ...], faults: Faults) -> TextTable | None:
     """Read a tab- or comma-separated table (by suffix) with a header row.
 
@@ -67,7 +99,7 @@ def read_table(path: Path, shown: str, needed: tuple[str, ...], faults: Faults) 
             start = reader.line_num + 1
     except csv.Error as error:
         faults.add(shown, f"line {reader.line_num}", "table", f"cannot be split into cells ({error})",
-                   "close every quotation mark; use one separator throughout")  # fmt: skip
+                   "close every quotation mark, double those inside a quoted cell")  # fmt: skip
         return None
     if not rows:
         faults.add(shown, "", "empty", "is empty", "write a header line and one row per entry")
@@ -93,9 +125,20 @@ def _checked(
     shown: str, rows: list[tuple[int, list[str]]], needed: tuple[str, ...], faults: Faults
 ) -> TextTable | None:
     header = rows[0][1]
+    other = {",": "comma", ";": "semicolon", "\t": "tab"}
+    seen = [name for mark, name in other.items() if len(header) == 1 and mark in header[0]]
+    if seen:
+        faults.add(shown, "line 1", "separator", f"the header is one cell with a {seen[0]} in it",
+                   "separate cells by tabs in .tsv files, by commas in .csv files")  # fmt: skip
+        return None
     sound = True
+    for number, name in enumerate(header, start=1):
+        if not name:
+            sound = False
+            faults.add(shown, "line 1", "nameless-column", f"column {number} has no name",
+                       "give it a name, or take it out")  # fmt: skip
     for name, times in Counter(header).items():
-        if times > 1:
+        if name and times > 1:
             sound = False
             faults.add(shown, "line 1", "duplicate-column", f"column '{name}' stands {times} times",
                        "give every column a name of its own")  # fmt: skip
