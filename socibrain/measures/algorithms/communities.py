@@ -81,10 +81,13 @@ def find_communities(weights: Array, *, resolution: float, restarts: int, seed: 
 def leiden(weights: Array, *, resolution: float, restarts: int, seed: int) -> Labels:
     """One numbered partition a restart, (restarts, n).
 
+    The search weighs its random moves in units of the weights, so it is given weights of mean 1:
+    what is found depends on the scale of measurement no more than modularity does.
     Not safe in threads: igraph draws from one generator for the whole process, which is handed back
     to Python's own afterwards.
     """
-    graph = weights_to_igraph(weights)
+    present = weights[weights > 0]
+    graph = weights_to_igraph(weights / present.mean() if present.size else weights)
     found = np.empty((restarts, len(weights)), dtype=np.int64)
     draws = random.Random()
     igraph.set_random_number_generator(draws)
