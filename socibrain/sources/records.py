@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 
 import numpy as np
@@ -55,9 +56,15 @@ class Answers:
     """Everything written in answer to one question, in file order."""
 
     question: str
+    file: str
     nominations: tuple[Nomination, ...]
-    choosers: frozenset[str]
-    """Ids that have a row in the file, even an empty one."""
+    first_line: Mapping[str, int]
+    """Line of the first row of everybody who has a row in the file, even an empty one."""
+
+    @property
+    def choosers(self) -> frozenset[str]:
+        """Ids that have a row in the file, even an empty one."""
+        return frozenset(self.first_line)
 
 
 @dataclass(frozen=True)
@@ -85,7 +92,12 @@ class MatrixFile:
 
 @dataclass(frozen=True)
 class MatrixRecord:
-    """One matrix as the file holds it, square and finite or NaN; nothing else checked."""
+    """One matrix as the file holds it, (n_regions, n_regions), read-only.
+
+    Off the diagonal it is finite, or NaN in every cell of a region; nothing else is checked.
+    ``names`` are the regions as the file itself calls them, () when it does not.
+    """
 
     origin: MatrixFile
     weights: Array
+    names: tuple[str, ...] = ()

@@ -1,0 +1,97 @@
+"""The roster: who could be named, site by site."""
+
+from __future__ import annotations
+
+from collections.abc import Collection, Mapping
+
+from socibrain.documents import nearest
+from socibrain.errors import Faults
+from socibrain.sources.records import PeopleTable, RosterEntry
+from socibrain.sources.spelling import name_key
+from socibrain.sources.study import Roster, Study
+from socibrain.sources.tables import is_missing, lookalike, read_table
+
+
+def read_roster(study: Study, people: PeopleTable, faults: Faults) -> tuple[RosterEntry, ...]:
+    """Everyone who could be named, in file order.
+
+    Without a declared roster: everyone in the people table, called by id.
+    Grave faults: a person twice; one name for two people of a site (as `name_key` sees it); a
+    missing id, site or name; a person or site that the people table does not know; a site other
+    than the people table's.  Their texts hold ids and sites, never names.
+    """
+    homes = {str(person): str(site) for person, site in people.table["site"].items()}
+    declared = study.says.roster
+    if declared is None:
+        return tuple(RosterEntry(person, site, person) for person, site in homes.items())
+    needed = tuple(column for column in (declared.person, declared.name, declared.site) if column)
+    table = read_table(study.path(declared.file), declared.file, needed, faults)
+    found: dict[int, RosterEntry] = {}
+    for line, row in table or ():
+        entry = _entry(declared, row, homes)
+        wrong = _wrong(declared, row, entry, homes)
+        for column, kind, what, mend in wrong:
+            faults.add(declared.file, f"line {line}, column {column}", kind, what, mend)
+        if not wrong:
+            found[line] = entry
+    return _once_each(declared, found, faults)
+
+
+def mend_unknown(person: str, known: Collection[str], otherwise: str) -> str:
+    """How to mend an id that is not ``known``: the known one that looks alike, if there is one.
+
+    >>> mend_unknown("7", ["007"], "add it"), mend_unknown("8", ["007"], "add it")
+    ("did you mean '007'?", 'add it')
+    """
+    other = lookalike(person, known)
+    return otherwise if other is None else f"did you mean '{other}'?"
+
+
+def _entry(declared: Roster, row: dict[str, str], homes: Mapping[str, str]) -> RosterEntry:
+    person = row[declared.person]
+    site = homes.get(person, "") if declared.site is None else row[declared.site]
+    return RosterEntry(person, site, person if declared.name is None else row[declared.name])
+
+
+def _wrong(
+    declared: Roster, row: dict[str, str], entry: RosterEntry, homes: Mapping[str, str]
+) -> list[tuple[str, str, str, str]]:
+    """Everything wrong with one row: column, kind, what was found, how to mend."""
+    wrong = []
+    person, sites = entry.person, set(homes.values())
+    if is_missing(person):
+        wrong.append((declared.person, "missing-id", "there is no id", "write the id of the people table"))
+    elif person not in homes:
+        mend = mend_unknown(person, homes, "add the person to the people table, or take the row out")
+        wrong.append((declared.person, "unknown-person", f"'{person}' is not in the people table", mend))
+    if declared.name and (is_missing(row[declared.name]) or not name_key(row[declared.name])):
+        wrong.append((declared.name, "missing-name", "there is no name", "write it as others would write it"))
+    if declared.site and is_missing(entry.site):
+        wrong.append(
+            (declared.site, "missing-site", "there is no site", "write where the person can be named")
+        )
+    elif declared.site and entry.site not in sites:
+        what = f"the people table has no site '{entry.site}'"
+        wrong.append((declared.site, "unknown-site", what, nearest(entry.site, sites)))
+    elif declared.site and entry.site != homes.get(person, entry.site):
+        what = f"'{person}' is in site '{entry.site}' here and in '{homes[person]}' in the people table"
+        wrong.append((declared.site, "two-sites", what, "make both tables agree: everyone has one site"))
+    return wrong
+
+
+def _once_each(declared: Roster, found: Mapping[int, RosterEntry], faults: Faults) -> tuple[RosterEntry, ...]:
+    """The entries without the later of two that clash; each clash is a fault that cites both lines."""
+    persons: dict[str, int] = {}
+    names: dict[tuple[str, str], int] = {}
+    for line, entry in found.items():
+        name = entry.person if declared.name is None else name_key(entry.name)
+        if entry.person in persons:
+            faults.add(declared.file, f"lines {persons[entry.person]} and {line}", "duplicate-person",
+                       f"'{entry.person}' stands twice", "keep one row per person")  # fmt: skip
+        elif (entry.site, name) in names:
+            faults.add(declared.file, f"lines {names[entry.site, name]} and {line}", "duplicate-name",
+                       f"one name stands for two people of site '{entry.site}'",
+                       "tell them apart as people do, by a second name or an initial")  # fmt: skip
+        else:
+            persons[entry.person] = names[entry.site, name] = line
+    return tuple(found[line] for line in persons.values())
