@@ -6,7 +6,6 @@ from dataclasses import dataclass
 
 import pandas as pd
 
-from socibrain.networks.brain import BrainNetwork
 from socibrain.networks.social import SocialNetwork
 
 
@@ -41,6 +40,7 @@ class Cohort:
     names as above).  ``sites``: one row per site.  ``partitions``: columns origin, person, visit,
     region, community (from 1).  ``ledger``: columns stage, side, person, site, visit, reason.
     ``problems``: columns file, place, kind, found, mend, grave.  ``flow``: see `ledger.py`.
+    ``region_systems`` gives each region's system, in matrix order ('' where none is declared).
     """
 
     persons: pd.DataFrame
@@ -52,4 +52,4 @@ class Cohort:
     flow: pd.DataFrame
     columns: dict[str, Column]
     social: tuple[SocialNetwork, ...]
-    example_brain: BrainNetwork | None
+    region_systems: dict[str, str]

@@ -41,7 +41,7 @@ class Finished:
         """Arrays of the finished task, or None when there is no sound entry."""
         path = self.folder / f"{key}.npz"
         try:
-            with np.load(path, allow_pickle=False) as entry:
+            with path.open("rb") as file, np.load(file, allow_pickle=False) as entry:
                 return {name: entry[name] for name in entry.files}
         except (OSError, ValueError, zipfile.BadZipFile, KeyError, EOFError):
             return None

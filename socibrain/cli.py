@@ -1,0 +1,200 @@
+"""Arguments to stages; faults to exit codes."""
+
+from __future__ import annotations
+
+import json
+import math
+import sys
+import traceback
+from collections.abc import Callable
+from pathlib import Path
+from typing import Any
+
+import click
+import pandas as pd
+from rich.console import Console
+from rich.table import Table
+
+from socibrain.errors import Fault, Refusal
+from socibrain.measures.catalogue import all_measures
+from socibrain.run import stages
+from socibrain.run.record import VERSION
+
+OUR_FAULT, INTERRUPTED, SOME_FAILED = 1, 130, 5
+aloud = Console(stderr=True, highlight=False)
+plain = Console(highlight=False, soft_wrap=True)
+
+as_json = click.option("--json", "as_json", is_flag=True, help="Write results to stdout as JSON.")
+out_folder = click.option(
+    "--out", type=click.Path(path_type=Path, file_okay=False), help="Run folder [runs/<study or plan id>]."
+)
+worker_count = click.option(
+    "--workers", type=click.IntRange(min=1), default=None, help="Worker processes [all cores]."
+)
+
+
+@click.group(context_settings={"help_option_names": ["-h", "--help"]})
+@click.version_option(VERSION, prog_name="socibrain")
+def entry() -> None:
+    """Does where people stand among others go with how their brains are organised?
+
+    For group research only: never for diagnosing people, or for choosing or ranking them.
+    """
+
+
+@entry.command()
+@click.argument("folder", type=click.Path(path_type=Path, exists=True, file_okay=False))
+def begin(folder: Path) -> None:
+    """Write a first study file for what lies in FOLDER."""
+    click.echo(str(stages.begin(folder)))
+
+
+@entry.command()
+@click.argument("study", type=click.Path(path_type=Path))
+@out_folder
+@worker_count
+@as_json
+def audit(study: Path, out: Path | None, workers: int | None, as_json: bool) -> None:
+    """Tell what was found, matched and left out, and why; works on half-collected data."""
+    found = stages.audit(study, out=out or stages.default_folder(study), workers=workers, tell=_tell)
+    if as_json:
+        _json({"flow": found.flow, "sites": found.sites, "problems": found.problems, "ledger": found.ledger})
+    else:
+        _print("Flow", found.flow)
+        _print("Sites", found.sites)
+        _print("Names", found.names)
+        _print_problems(found.problems)
+    if found.problems["grave"].any():
+        raise SystemExit(4)
+
+
+@entry.command()
+@click.argument("study", type=click.Path(path_type=Path))
+@out_folder
+@worker_count
+@as_json
+def measure(study: Path, out: Path | None, workers: int | None, as_json: bool) -> None:
+    """Turn networks into tidy tables with data dictionaries."""
+    out = out or stages.default_folder(study)
+    cohort = stages.measure(study, out=out, workers=workers, tell=_tell)
+    if as_json:
+        _json({"persons": cohort.persons, "sites": cohort.sites})
+    else:
+        _print("Flow", cohort.flow)
+        click.echo(
+            f"{out / 'persons.csv'}: {len(cohort.persons)} rows, {len(cohort.persons.columns)} columns"
+        )
+
+
+@entry.command()
+@click.argument("plan", type=click.Path(path_type=Path))
+@out_folder
+@worker_count
+@as_json
+def link(plan: Path, out: Path | None, workers: int | None, as_json: bool) -> None:
+    """Answer the hypotheses of PLAN."""
+    out = out or stages.default_folder(plan)
+    answer = stages.link(plan, out=out, workers=workers, tell=_tell)
+    if as_json:
+        _json({"findings": answer.table})
+    else:
+        shown = ["id", "n", "n_sites", "estimate", "ci_low", "ci_high", "p_permutation", "p_family", "status"]
+        _print("Findings", answer.table[shown])
+        for finding in answer.findings.findings:
+            if finding.reason:
+                click.echo(f"{finding.hypothesis.id}: {finding.reason}")
+        click.echo(f"{out / 'findings.csv'}")
+    if (answer.table["status"] == "failed").any():
+        raise SystemExit(SOME_FAILED)
+
+
+@entry.command()
+@click.argument("run", type=click.Path(path_type=Path))
+@worker_count
+def report(run: Path, workers: int | None) -> None:
+    """Write the page of the run in folder RUN."""
+    click.echo(str(stages.report_run(run, workers=workers, tell=_tell)))
+
+
+@entry.command()
+@click.argument("name", required=False)
+@as_json
+def catalogue(name: str | None, as_json: bool) -> None:
+    """List every measure, or the passport of the measure called NAME."""
+    table = stages.catalogue()
+    if name is not None:
+        if name not in all_measures():
+            raise click.BadParameter(stages.no_such_measure(name), param_hint="NAME")
+        table = table[table["name"] == name]
+    if as_json:
+        _json({"measures": table})
+    elif name is None:
+        _print("Measures", table[["name", "side", "scale", "unit", "reading"]])
+    else:
+        for key, value in table.iloc[0].items():
+            click.echo(f"{key:>10}  {value}")
+
+
+def main(arguments: list[str] | None = None) -> None:
+    """Run the command line; every fault becomes a message and an exit code."""
+    sys.exit(_run(lambda: entry.main(args=arguments, standalone_mode=False)))
+
+
+def _run(act: Callable[[], Any]) -> int:
+    try:
+        act()
+    except Refusal as refusal:
+        _print_faults(refusal.faults)
+        return refusal.exit_code
+    except click.exceptions.Abort:
+        aloud.print("stopped; run the same command again to go on: finished work is kept")
+        return INTERRUPTED
+    except click.ClickException as error:
+        error.show()
+        return error.exit_code
+    except SystemExit as leaving:
+        return int(leaving.code or 0)
+    except Exception:  # our fault: say so, with what a maintainer needs
+        aloud.print("this is a fault of socibrain itself; please report the lines below")
+        aloud.print(traceback.format_exc())
+        return OUR_FAULT
+    return 0
+
+
+def _tell(message: str) -> None:
+    aloud.print(message)
+
+
+def _json(tables: dict[str, pd.DataFrame]) -> None:
+    content = {name: json.loads(table.to_json(orient="records")) for name, table in tables.items()}
+    click.echo(json.dumps(content, indent=2, ensure_ascii=False))
+
+
+def _print(title: str, table: pd.DataFrame) -> None:
+    shown = Table(title=title, title_justify="left", title_style="bold")
+    for name in table.columns:
+        numeric = table[name].dtype.kind in "iuf"
+        shown.add_column(str(name).replace("_", " "), justify="right" if numeric else "left")
+    for row in table.itertuples(index=False):
+        shown.add_row(*(_cell(value) for value in row))
+    plain.print(shown)
+
+
+def _cell(value: object) -> str:
+    if isinstance(value, float):
+        return "n/a" if math.isnan(value) else f"{value:.4g}"
+    return str(value)
+
+
+def _print_problems(problems: pd.DataFrame) -> None:
+    if problems.empty:
+        return
+    kinds = problems.groupby(["kind", "grave"], sort=False).size().reset_index(name="times")
+    _print("Problems", kinds)
+    grave = problems[problems["grave"].astype(bool)]
+    _print_faults([Fault(*row) for row in grave.itertuples(index=False, name=None)])
+
+
+def _print_faults(faults: Any) -> None:
+    for fault in faults:
+        aloud.print(str(fault), markup=False, soft_wrap=True)

@@ -1,0 +1,71 @@
+"""What was found, matched and left out, before anything is measured."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import pandas as pd
+
+from socibrain.cohort.assemble import problem_table, read_brains, stand
+from socibrain.cohort.gather import Gathered, gather
+from socibrain.cohort.ledger import Branch, flow_table, ledger_table
+from socibrain.errors import Faults
+from socibrain.sources.study import Study
+
+
+@dataclass(frozen=True)
+class Audit:
+    """What a study holds so far.
+
+    ``flow`` and ``ledger`` as in a measured cohort; ``problems`` has one row per fault found;
+    ``sites`` one row per site: who answered and is still to answer, who was scanned and is still
+    to be scanned; ``names`` one row per question: what became of the written names.
+    """
+
+    flow: pd.DataFrame
+    ledger: pd.DataFrame
+    problems: pd.DataFrame
+    sites: pd.DataFrame
+    names: pd.DataFrame
+
+
+def audit_study(
+    study: Study, *, version: str, workers: int, done: Callable[[int, int], None]
+) -> tuple[Audit, Gathered]:
+    """Look at everything the study names, half collected or whole.
+
+    Grave faults are on record in ``problems``, not raised, unless nobody can be read at all
+    (`DataRefused`).
+    """
+    faults = Faults()
+    gathered = gather(study, faults)
+    brains = read_brains(gathered, version=version, memory=None, workers=workers, measuring=False, done=done)
+    branches, leavings = stand(gathered, brains)
+    found = [*faults, *(fault for brain in brains for fault in brain.faults)]
+    audit = Audit(
+        flow=flow_table(branches, leavings),
+        ledger=ledger_table(leavings),
+        problems=problem_table(found),
+        sites=_sites(gathered, branches),
+        names=gathered.name_counts,
+    )
+    return audit, gathered
+
+
+def _sites(gathered: Gathered, branches: list[Branch]) -> pd.DataFrame:
+    """Per site: how many are at each step, and how many are still to come."""
+    steps = {(branch.side, label): people for branch in branches for label, people in branch.steps}
+    rows = []
+    for site in gathered.sites:
+        here = {person for person in gathered.people.ids if gathered.site(person) == site}
+        here |= {entry.person for entry in gathered.roster if entry.site == site}
+        row: dict[str, object] = {"site": site}
+        for (side, label), people in steps.items():
+            row[label] = len(here & people)
+            if (side, label) == ("social", "answered"):
+                row["still to answer"] = len(here & steps["social", "on the roster"] - people)
+            if (side, label) == ("brain", "scanned"):
+                row["still to scan"] = len(here & steps["brain", "invited"] - people)
+        rows.append(row)
+    return pd.DataFrame(rows)

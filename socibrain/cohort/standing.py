@@ -1,0 +1,94 @@
+"""Where everyone stands in the two branches: who is at each step, and why the others are not."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from socibrain.cohort.brains import MeasuredBrain
+from socibrain.cohort.gather import Gathered
+from socibrain.cohort.ledger import Branch, Leaving
+
+ROSTER, ANSWERED, TIES = "on the roster", "answered", "with usable ties"
+INVITED, SCANNED, QUALITY = "invited", "scanned", "passed quality"
+
+
+def social_branch(gathered: Gathered) -> tuple[Branch, list[Leaving]]:
+    """Roster, answered, usable ties (at least one tie in at least one question)."""
+    site = {entry.person: entry.site for entry in gathered.roster}
+    by_rule = {each.person: each.reason for each in gathered.left_out if each.leaves_out_of != "brain"}
+    answered, tied = set(), set()
+    for network in gathered.networks:
+        ties = network.ties
+        has_tie = ties.any(axis=0) | ties.any(axis=1)
+        for person, spoke, linked in zip(network.people, network.answered, has_tie, strict=True):
+            answered |= {person} if spoke else set()
+            tied |= {person} if linked else set()
+    tied &= answered
+    leavings = []
+    for person in sorted(site):
+        if person not in answered:
+            reason = by_rule.get(person, "did not answer")
+            leavings.append(Leaving(ANSWERED, "social", person, site[person], "", reason))
+        elif person not in tied:
+            reason = "no tie under the tie rule in any question"
+            leavings.append(Leaving(TIES, "social", person, site[person], "", reason))
+    steps = ((ROSTER, frozenset(site)), (ANSWERED, frozenset(answered)), (TIES, frozenset(tied)))
+    return Branch("social", steps), leavings
+
+
+def brain_branch(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[Branch, list[Leaving]]:
+    """Invited, scanned, passed quality (at least one usable network)."""
+    reasons = lost_scans(gathered, brains)
+    usable = {b.origin.person for b in brains if _key(b) not in reasons}
+    scanned = {b.origin.person for b in brains} & gathered.scanned
+    leavings = []
+    for person in sorted(gathered.invited):
+        site = gathered.site(person)
+        if person not in scanned:
+            has_file = any(b.origin.person == person for b in brains)
+            reason = (
+                "not scanned" if person not in gathered.scanned else "scanned, but there is no network file"
+            )
+            reason = "has a file, but the study says not scanned" if has_file else reason
+            leavings.append(Leaving(SCANNED, "brain", person, site, "", reason))
+        elif person not in usable:
+            mine = [reason for (_, who, _), reason in sorted(reasons.items()) if who == person]
+            leavings.append(Leaving(QUALITY, "brain", person, site, "", mine[0]))
+    invited = frozenset(gathered.invited)
+    steps = (
+        (INVITED, invited),
+        (SCANNED, frozenset(scanned & invited)),
+        (QUALITY, frozenset(usable & scanned & invited)),
+    )
+    return Branch("brain", steps), leavings
+
+
+def single_scans(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> list[Leaving]:
+    """Single visits that cannot be used, of people who have another that can."""
+    return [
+        Leaving(QUALITY, "brain", person, gathered.site(person), visit, f"{source}: {reason}")
+        for (source, person, visit), reason in sorted(lost_scans(gathered, brains).items())
+        if visit
+    ]
+
+
+def lost_scans(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> dict[tuple[str, str, str], str]:
+    """Reason by (input, person, visit) for every scan that cannot be used."""
+    by_rule = {
+        (each.person, each.visit): each.reason for each in gathered.left_out if each.leaves_out_of != "social"
+    }
+    lost = {}
+    for brain in brains:
+        person, visit = brain.origin.person, brain.origin.visit
+        reason = by_rule.get((person, "")) or by_rule.get((person, visit)) or brain.left_out
+        if not reason and person not in gathered.scanned:
+            reason = "has a file, but the study says not scanned"
+        if not reason and person not in gathered.invited:
+            reason = "scanned, but not invited"
+        if reason:
+            lost[_key(brain)] = reason
+    return lost
+
+
+def _key(brain: MeasuredBrain) -> tuple[str, str, str]:
+    return brain.origin.source, brain.origin.person, brain.origin.visit

@@ -1,0 +1,1 @@
+"""The stages in order; owns the output folder."""
