@@ -12,7 +12,7 @@ import pandas as pd
 from socibrain.cohort.brains import BrainTask, MeasuredBrain, measure_brains
 from socibrain.cohort.columns import describe_columns
 from socibrain.cohort.gather import Gathered, gather
-from socibrain.cohort.ledger import Leaving, flow_table, ledger_table
+from socibrain.cohort.ledger import Branch, Leaving, flow_table, ledger_table
 from socibrain.cohort.positions import Positions, measure_positions
 from socibrain.cohort.standing import brain_branch, lost_scans, single_scans, social_branch
 from socibrain.cohort.table import Cohort
@@ -83,9 +83,10 @@ def read_brains(
     return measure_brains(tasks, workers=workers, done=lambda count: done(count, len(tasks)))
 
 
-def stand(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[list, list[Leaving]]:
+def stand(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[list[Branch], list[Leaving]]:
     """The branches that the study has, and everyone who leaves them."""
-    branches, leavings = [], []
+    branches: list[Branch] = []
+    leavings: list[Leaving] = []
     if gathered.study.says.questionnaire:
         branch, gone = social_branch(gathered)
         branches.append(branch)
@@ -130,8 +131,8 @@ def _persons(gathered: Gathered, positions: Positions, usable: Sequence[Measured
         table[name] = [values.get(key, values.get((key[0], ""), np.nan)) for key in keys]
     social = positions.persons.reindex(table["person"])
     social.index = table.index
-    brain = pd.DataFrame([measured.get(key, {}) for key in keys], index=table.index, dtype=np.float64)
-    return pd.concat([table, social, brain], axis=1)
+    organised = pd.DataFrame([measured.get(key, {}) for key in keys], index=table.index, dtype=np.float64)
+    return pd.concat([table, social, organised], axis=1)
 
 
 def _regions(gathered: Gathered, usable: Sequence[MeasuredBrain]) -> pd.DataFrame:

@@ -48,7 +48,7 @@ def audit_study(
         ledger=ledger_table(leavings),
         problems=problem_table(found),
         sites=_sites(gathered, branches),
-        names=gathered.name_counts,
+        names=_names(gathered.tally),
     )
     return audit, gathered
 
@@ -69,3 +69,12 @@ def _sites(gathered: Gathered, branches: list[Branch]) -> pd.DataFrame:
                 row["still to scan"] = len(here & steps["brain", "invited"] - people)
         rows.append(row)
     return pd.DataFrame(rows)
+
+
+def _names(tally: pd.DataFrame) -> pd.DataFrame:
+    """Per question: how many answered, and what became of the names they wrote."""
+    if tally.empty:
+        return pd.DataFrame()
+    counts = tally.groupby("question", sort=False).sum(numeric_only=True)
+    states = tally.groupby(["question", "state"], sort=False).size().unstack(fill_value=0)
+    return states.join(counts).reset_index()

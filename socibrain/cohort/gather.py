@@ -1,17 +1,19 @@
-"""Everything that the study's files say, read once and matched by id."""
+"""Everything that the study's files say, read once, matched by id."""
 
 from __future__ import annotations
 
 from dataclasses import dataclass
-from pathlib import PurePosixPath
 
 import pandas as pd
 
-from socibrain.errors import DataRefused, Faults
-from socibrain.networks.social import SocialNetwork, build_social_networks
+from socibrain.errors import Faults
+from socibrain.networks.social import SocialNetwork, SocialReading, build_social_networks
+from socibrain.sources.answered import read_answered
 from socibrain.sources.answers import read_answers
-from socibrain.sources.exclusions import LeftOut, read_answered, read_exclusions, read_rule_values
+from socibrain.sources.decisions import DECISIONS, OpenName
+from socibrain.sources.exclusions import LeftOut, read_exclusions, read_rule_values
 from socibrain.sources.matrix_files import find_matrices
+from socibrain.sources.names import read_names
 from socibrain.sources.people import invited, read_people, scanned
 from socibrain.sources.records import MatrixFile, PeopleTable, RegionTable, RosterEntry
 from socibrain.sources.regions import read_regions
@@ -23,9 +25,9 @@ from socibrain.sources.study import Study
 class Gathered:
     """What was read.
 
-    ``invited`` and ``scanned`` are ids (everyone, and whoever has a matrix, when not declared);
-    ``scan_values`` holds the numbers of exclusion tables as ``<file>.<column>``, each by (person,
-    visit).
+    ``tally`` says what became of every written name, as in `SocialReading`.  ``invited`` and
+    ``scanned`` are ids (everyone, and whoever has a matrix, where not declared); ``scan_values``
+    holds the numbers of exclusion tables as ``file.column``, each by (person, visit).
     """
 
     study: Study
@@ -33,6 +35,8 @@ class Gathered:
     regions: RegionTable | None
     roster: tuple[RosterEntry, ...]
     networks: tuple[SocialNetwork, ...]
+    tally: pd.DataFrame
+    open_names: tuple[OpenName, ...]
     matrices: tuple[MatrixFile, ...]
     left_out: tuple[LeftOut, ...]
     invited: frozenset[str]
@@ -47,3 +51,77 @@ class Gathered:
     def sites(self) -> tuple[str, ...]:
         """All sites, in alphabetical order."""
         return tuple(sorted({str(site) for site in self.people.table["site"]}))
+
+
+def gather(study: Study, faults: Faults) -> Gathered:
+    """Read every file that the study names, except the matrices themselves.
+
+    Raises `DataRefused` when the people table cannot be used: nobody would be known by then.
+    Whatever else is wrong is in ``faults``.
+    """
+    people = read_people(study, faults)
+    if people is None:
+        faults.refuse()
+    left_out = read_exclusions(study, people, faults)
+    roster: tuple[RosterEntry, ...] = ()
+    social = SocialReading((), pd.DataFrame(), ())
+    if study.says.questionnaire:
+        roster = read_roster(study, people, faults)
+        social = _read_social(study, people, roster, left_out, faults)
+    found = [
+        matrix for source in study.says.brain for matrix in find_matrices(study, source, people.ids, faults)
+    ]
+    asked, came = invited(study, people), scanned(study, people)
+    return Gathered(
+        study=study,
+        people=people,
+        regions=read_regions(study, faults) if study.says.regions else None,
+        roster=roster,
+        networks=social.networks,
+        tally=social.tally,
+        open_names=social.open_names,
+        matrices=tuple(found),
+        left_out=left_out,
+        invited=frozenset(people.ids) if asked is None else asked,
+        scanned=frozenset(matrix.person for matrix in found) if came is None else came,
+        scan_values=read_rule_values(study, people),
+    )
+
+
+def input_files(gathered: Gathered) -> list[str]:
+    """Every file that was read, as the study writes it, without repeats."""
+    says = gathered.study.says
+    people = says.people.file
+    files = [people, people.rsplit(".", 1)[0] + ".json"]
+    files += [rule.file for rule in says.exclusions if rule.file]
+    files += [part.file for part in (says.roster, says.regions) if part]
+    if asked := says.questionnaire:
+        files += [question.file for question in asked.questions.values()]
+        files += [asked.answered.file] if asked.answered else []
+        files += [asked.aliases] if asked.aliases else []
+        files.append(DECISIONS)
+    return list(dict.fromkeys([*files, *(matrix.file for matrix in gathered.matrices)]))
+
+
+def _read_social(
+    study: Study,
+    people: PeopleTable,
+    roster: tuple[RosterEntry, ...],
+    left_out: tuple[LeftOut, ...],
+    faults: Faults,
+) -> SocialReading:
+    asked = study.says.questionnaire
+    questions = asked.questions if asked else {}
+    read = [read_answers(study, question, faults) for question in questions]
+    known = {*people.ids, *(entry.person for entry in roster)}
+    role = people.table["role"]
+    return build_social_networks(
+        study,
+        roster,
+        [answers for answers in read if answers is not None],
+        faults,
+        answered=read_answered(study, faults, known=known),
+        roles={person: role.get(person) for person in people.ids},
+        names=read_names(study, roster, faults),
+        leave_out=frozenset(each.person for each in left_out if each.leaves_out_of != "brain"),
+    )

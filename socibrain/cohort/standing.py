@@ -19,7 +19,7 @@ def social_branch(gathered: Gathered) -> tuple[Branch, list[Leaving]]:
     answered, tied = set(), set()
     for network in gathered.networks:
         ties = network.ties
-        has_tie = ties.any(axis=0) | ties.any(axis=1)
+        has_tie = (ties + ties.T).sum(axis=1) > 0
         for person, spoke, linked in zip(network.people, network.answered, has_tie, strict=True):
             answered |= {person} if spoke else set()
             tied |= {person} if linked else set()
@@ -81,6 +81,8 @@ def lost_scans(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> dict[tupl
     for brain in brains:
         person, visit = brain.origin.person, brain.origin.visit
         reason = by_rule.get((person, "")) or by_rule.get((person, visit)) or brain.left_out
+        if not reason and any(fault.grave for fault in brain.faults):
+            reason = "the file cannot be used (see problems.csv)"
         if not reason and person not in gathered.scanned:
             reason = "has a file, but the study says not scanned"
         if not reason and person not in gathered.invited:

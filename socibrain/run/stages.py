@@ -13,7 +13,7 @@ from joblib import cpu_count
 from socibrain.cohort.assemble import measure_study
 from socibrain.cohort.audit import Audit, audit_study
 from socibrain.cohort.columns import numeric_columns
-from socibrain.cohort.gather import gather
+from socibrain.cohort.gather import gather, input_files
 from socibrain.cohort.table import Cohort
 from socibrain.documents import nearest
 from socibrain.errors import DataRefused, DocumentRefused, Fault, Faults, Refusal
@@ -27,6 +27,7 @@ from socibrain.run import outputs
 from socibrain.run.folder import RunFolder, json_bytes
 from socibrain.run.record import VERSION, Clock, digests, packages
 from socibrain.sources.begin import begin as first_study_file
+from socibrain.sources.decisions import DECISIONS, write_suggestions
 from socibrain.sources.study import Study, read_study
 from socibrain.tasks.finished import file_digest
 
@@ -100,7 +101,8 @@ def audit(
     )
     if folder:
         folder.write(outputs.of_audit(found))
-        tell(f"{gathered.write_suggestions()} names wait for a decision in {gathered.decisions_path}")
+        added = write_suggestions(study, gathered.open_names, Faults())
+        tell(f"{len(gathered.open_names)} names wait for a decision in {study.path(DECISIONS)} ({added} new)")
     return found
 
 
@@ -265,7 +267,7 @@ def _record(study: Study, plan: Plan | None, clock: Clock) -> dict[str, object]:
         "study_file": study.document.path.as_posix(),
         "study_digest": file_digest(study.document.path),
         "study_says": study.says.model_dump(mode="json"),
-        "inputs": digests(study.folder, gather(study, Faults()).files),
+        "inputs": digests(study.folder, input_files(gather(study, Faults()))),
         "started": clock.started,
         "seconds": clock.seconds,
     }
