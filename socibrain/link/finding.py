@@ -42,8 +42,10 @@ class Finding:
     by the same SDs), apart.  ``variance_ratio`` is site variance over residual variance, 0 at the
     boundary.  ``null`` holds the shuffled statistics of this hypothesis alone, (shuffles,).
     ``people``, ``sites``, ``outcome_residual`` and ``predictor_residual`` (both (n,), in the units
-    of the columns, within-site and adjusted) are for drawing.  When ``status`` is refused or failed, numbers
-    are NaN, arrays empty, and ``reason`` says why.
+    of the columns, within-site and adjusted) are for drawing.  ``notes`` say what was coded or
+    dropped on the way (reference levels, site means that could not be kept).  The interval covers
+    1 − alpha.  When ``status`` is refused or failed, numbers are NaN, arrays empty, and ``reason``
+    says why.
     """
 
     hypothesis: Hypothesis
@@ -72,6 +74,7 @@ class Finding:
     sites: tuple[str, ...]
     outcome_residual: Array
     predictor_residual: Array
+    notes: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)

@@ -1,0 +1,101 @@
+"""Who is in the sample of a family of hypotheses."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from numbers import Real
+
+import numpy as np
+import pandas as pd
+from numpy.typing import NDArray
+
+from socibrain.cohort.table import Cohort
+from socibrain.documents import nearest
+from socibrain.errors import DocumentRefused, Fault
+from socibrain.link.hypothesis import Hypothesis
+
+Array = NDArray[np.float64]
+LEFT_OUT = ["family", "person", "site", "reason"]
+
+
+@dataclass(frozen=True)
+class Sample:
+    """People with everything that a family of hypotheses asks for, and everyone else with a reason.
+
+    ``table`` has one row per person of the sample, sorted by site then person, indexed from 0.
+    ``left_out`` has columns family, person, site, reason.
+    """
+
+    table: pd.DataFrame
+    left_out: pd.DataFrame
+
+
+def draw_sample(cohort: Cohort, hypotheses: Sequence[Hypothesis], *, visit: str, family: str) -> Sample:
+    """The people complete in all columns of all ``hypotheses`` at one visit.
+
+    People without any scan count at every visit, with no brain measures.
+    Raises `DocumentRefused` with every column that the cohort does not have.
+    """
+    columns = list(dict.fromkeys(name for h in hypotheses for name in (h.outcome, h.predictor, *h.adjust)))
+    _refuse_unknown(cohort, columns)
+    everyone = cohort.persons.drop_duplicates("person")[["person", "site"]]
+    rows = cohort.persons[cohort.persons["visit"].isin([visit, ""])]
+    missing = pd.DataFrame({name: _missing(rows[name]) for name in columns}, index=rows.index)
+    lost = missing.any(axis=1) | rows["site"].isna()
+    reasons = dict.fromkeys(everyone["person"], f"no usable scan at visit '{visit}'")
+    for person, lacks in zip(rows["person"], missing.to_numpy(), strict=True):
+        lacking = [name for name, lack in zip(columns, lacks, strict=True) if lack]
+        told = [f"'{name}': {_why(cohort, name, person, visit)}" for name in lacking]
+        reasons[person] = "; ".join(told or ["no site"])
+    table = rows[~lost].sort_values(["site", "person"], ignore_index=True)
+    gone = everyone[~everyone["person"].isin(table["person"])]
+    left_out = gone.assign(family=family, reason=[reasons[person] for person in gone["person"]])
+    return Sample(table, left_out[LEFT_OUT].reset_index(drop=True))
+
+
+def numbers(column: pd.Series) -> Array | None:
+    """The column as float64, (n,), with NaN for missing and infinite; None where it holds text.
+
+    >>> numbers(pd.Series([True, False, None], dtype=object)).tolist()
+    [1.0, 0.0, nan]
+    >>> numbers(pd.Series(["a", "b"])) is None
+    True
+    """
+    known = column[column.notna()]
+    if not all(isinstance(value, Real | np.bool_) for value in known):
+        return None
+    values = np.full(len(column), np.nan)
+    values[column.notna().to_numpy()] = [float(value) for value in known]
+    return np.where(np.isfinite(values), values, np.nan)
+
+
+def _missing(column: pd.Series) -> NDArray[np.bool_]:
+    values = numbers(column)
+    return np.isnan(values) if values is not None else column.isna().to_numpy(bool)
+
+
+def _why(cohort: Cohort, name: str, person: str, visit: str) -> str:
+    """Why this person has no value: what the ledger says of that side, or when there is none."""
+    about = cohort.columns.get(name)
+    if about is None or not about.measure:
+        return "missing"
+    side = "social" if about.origin in {network.question for network in cohort.social} else "brain"
+    ledger = cohort.ledger
+    mine = (ledger["person"] == person) & (ledger["side"] == side) & ledger["visit"].isin([visit, ""])
+    told = list(dict.fromkeys(ledger.loc[mine, "reason"]))
+    return ", ".join(told) if told else f"undefined ({about.undefined})"
+
+
+def _refuse_unknown(cohort: Cohort, columns: Sequence[str]) -> None:
+    known = [str(name) for name in cohort.persons.columns]
+    unknown = [name for name in columns if name not in known]
+    if unknown:
+        raise DocumentRefused(
+            *(
+                Fault(
+                    "hypotheses", name, "unknown-column", "is no column of the cohort", nearest(name, known)
+                )
+                for name in unknown
+            )
+        )
