@@ -7,9 +7,14 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from socibrain.sources.records import RegionTable
+from socibrain.errors import Faults
+from socibrain.sources.records import MatrixRecord, RegionTable
+from socibrain.sources.study import BrainInput, Study
 
 Array = NDArray[np.float64]
+
+NEAR = 1e-6
+"""Largest asymmetry that is taken for rounding, as a share of the largest absolute weight."""
 
 
 @dataclass(frozen=True)
@@ -28,3 +33,120 @@ class BrainNetwork:
     regions: RegionTable
     weights: Array
     mean_connectivity: float
+
+
+@dataclass(frozen=True)
+class BrainReading:
+    """What became of one matrix: a network, or the reason why this person is left out.
+
+    When there is neither, the matrix was refused, and the reason is among the faults.
+    """
+
+    network: BrainNetwork | None
+    left_out: str = ""
+
+
+def build_brain(
+    study: Study, record: MatrixRecord, regions: RegionTable | None, faults: Faults
+) -> BrainReading:
+    """Check one matrix, and apply what the study says of dead regions and negative weights.
+
+    Asymmetry within 1e-6 of the largest absolute weight is rounding, and averaged away; more is a
+    grave fault.  The diagonal is set to 0.  A region is dead when its weights are all missing or
+    all 0.  Without a region table regions are called r1 … rn and belong to no system.
+
+    >>> from pathlib import Path
+    >>> from socibrain.documents import Document
+    >>> from socibrain.sources.records import MatrixFile
+    >>> from socibrain.sources.study import StudyFile
+    >>> says = {"socibrain": 1, "study": "x", "title": "x", "people": {"file": "people.tsv"},
+    ...     "brain": {"rest": {"files": "{person}.tsv", "edges": "correlation", "negative": "drop"}}}
+    >>> study = Study(Document(Path("study.yaml"), StudyFile(**says), None))
+    >>> weights = np.array([[1, 0.5, -0.25], [0.5, 1, 0.5], [-0.25, 0.5, 1]])
+    >>> record = MatrixRecord(MatrixFile("rest", "007", "", "007.tsv"), weights)
+    >>> network = build_brain(study, record, None, Faults()).network
+    >>> network.weights.tolist(), network.mean_connectivity, network.regions.names
+    ([[0.0, 0.5, 0.0], [0.5, 0.0, 0.5], [0.0, 0.5, 0.0]], 0.25, ('r1', 'r2', 'r3'))
+    """
+    rules, origin = study.says.brain[record.origin.source], record.origin
+    n = len(record.weights)
+    table = regions or RegionTable(tuple(f"r{i + 1}" for i in range(n)), ("",) * n)
+    given = record.weights.copy()
+    np.fill_diagonal(given, 0.0)
+    dead = _dead(given)
+    if dead.any():
+        return _with_dead(table, dead, rules, origin.file, faults)
+    if not (_in_order(record, table, faults) and _symmetric(given, origin.file, faults)):
+        return BrainReading(None)
+    weights = (given + given.T) / 2
+    mean_connectivity = float(weights.sum() / (n * (n - 1)))
+    if not _within_range(weights, rules, origin.file, faults):
+        return BrainReading(None)
+    weights = np.abs(weights) if rules.negative == "absolute" else np.where(weights > 0, weights, 0.0)
+    weights.setflags(write=False)
+    network = BrainNetwork(origin.source, origin.person, origin.visit, table, weights, mean_connectivity)
+    return BrainReading(network)
+
+
+def _dead(weights: Array) -> NDArray[np.bool_]:
+    """Regions without any weight: all missing, or none but 0 beside what is missing elsewhere."""
+    nothing = np.isnan(weights) | (weights == 0)
+    dead: NDArray[np.bool_] = nothing.all(axis=0) & nothing.all(axis=1)
+    return dead
+
+
+def _with_dead(
+    table: RegionTable, dead: NDArray[np.bool_], rules: BrainInput, file: str, faults: Faults
+) -> BrainReading:
+    names = [f"'{name}'" for name, gone in zip(table.names, dead, strict=True) if gone]
+    found = f"dead region{'s' if len(names) > 1 else ''} without any weight: {', '.join(names)}"
+    place = f"row {int(np.argmax(dead)) + 1}"
+    if rules.dead_regions == "exclude_person":
+        faults.add(
+            file, place, "dead-region", found, "the person is left out of this brain input", grave=False
+        )
+        return BrainReading(None, found)
+    faults.add(file, place, "dead-region", found,
+               "compute the matrix again, or write `dead_regions: exclude_person`")  # fmt: skip
+    return BrainReading(None)
+
+
+def _in_order(record: MatrixRecord, table: RegionTable, faults: Faults) -> bool:
+    """Whether a file that names the table's regions names them in the table's order."""
+    if record.names == table.names or set(record.names) != set(table.names):
+        return True
+    at = next(i for i, (own, other) in enumerate(zip(record.names, table.names, strict=True)) if own != other)
+    faults.add(record.origin.file, f"row {at + 1}", "region-order",
+               f"region '{record.names[at]}' stands where the region table has '{table.names[at]}'",
+               "bring both into the same order")  # fmt: skip
+    return False
+
+
+def _symmetric(weights: Array, file: str, faults: Faults) -> bool:
+    apart = np.abs(weights - weights.T)
+    if apart.max() <= NEAR * np.abs(weights).max():
+        return True
+    i, j = np.unravel_index(np.argmax(apart), apart.shape)
+    faults.add(file, f"row {i + 1}, column {j + 1}", "not-symmetric",
+               f"holds {weights[i, j]:.6g} where row {j + 1}, column {i + 1} holds {weights[j, i]:.6g}",
+               "give each pair of regions one weight; directed brain networks are not read")  # fmt: skip
+    return False
+
+
+def _within_range(weights: Array, rules: BrainInput, file: str, faults: Faults) -> bool:
+    """Whether the weights can be what the study says they are."""
+    if rules.negative == "refuse" and (weights < 0).any():
+        pairs = np.argwhere(np.triu(weights < 0))
+        i, j = pairs[0]
+        more = f" (and {len(pairs) - 1} more pairs are negative)" if len(pairs) > 1 else ""
+        faults.add(file, f"row {i + 1}, column {j + 1}", "negative-weight",
+                   f"the weight is {weights[i, j]:.6g}{more}",
+                   "compute the matrix again, or write `negative: drop` or `negative: absolute`")  # fmt: skip
+        return False
+    if "correlation" in rules.edges and np.abs(weights).max() > 1 + NEAR:
+        i, j = np.unravel_index(np.argmax(np.abs(weights)), weights.shape)
+        faults.add(file, f"row {i + 1}, column {j + 1}", "not-a-correlation",
+                   f"the weight {weights[i, j]:.6g} is outside -1 to 1",
+                   "write what the weights are: `edges: fisher_z`, `edges: other` …")  # fmt: skip
+        return False
+    return True
