@@ -22,6 +22,8 @@ Kind = Literal["resolved", "outside site", "off roster", "ambiguous", "unresolve
 
 LIKENESS = 80.0
 """Least similarity (0 to 100) at which a person is offered to the human; our own choice."""
+PART_OF_NAME = 90.0
+"""Similarity of a text whose every word begins a word of the name ("J. Moor"); our own choice."""
 CLOSE_CALL = 5.0
 """People within so many points of the best one are offered together; our own choice."""
 
@@ -56,8 +58,8 @@ class NameBook:
     decisions: Mapping[tuple[str, str], str | None]
     names: Mapping[str, Mapping[str, frozenset[str]]]
     aliases: Mapping[tuple[str, str], frozenset[str]]
-    spoken: Mapping[str, Mapping[str, str]]
-    """Site -> person -> name in plain words, for similarity; people whose name is their id are absent."""
+    spoken: Mapping[str, Mapping[str, tuple[str, ...]]]
+    """Site -> person -> words of the name, for similarity; people whose name is their id are absent."""
 
     def resolve(self, written: str, site: str) -> Resolution:
         """Whom ``written`` means when somebody of ``site`` wrote it.
@@ -104,10 +106,10 @@ class NameBook:
 
     def _offer(self, written: str, site: str) -> tuple[tuple[str, ...], float]:
         """The people of ``site`` whose id or name is like ``written``, and the best similarity."""
-        loose, words = loose_form(written), " ".join(name_words(written))
+        loose, words = loose_form(written), name_words(written)
         scores = {p: 100.0 for p, home in self.sites.items() if home == site and loose_form(p) == loose}
         for person, spoken in self.spoken.get(site, {}).items() if words else ():
-            likeness = float(fuzz.WRatio(words, spoken))
+            likeness = _likeness(words, spoken)
             if likeness >= LIKENESS:
                 scores[person] = max(likeness, scores.get(person, 0.0))
         best = max(scores.values(), default=0.0)
@@ -140,15 +142,21 @@ def name_book(
     ('unresolved', ('007',))
     """
     names: dict[str, dict[str, frozenset[str]]] = defaultdict(dict)
-    spoken: dict[str, dict[str, str]] = defaultdict(dict)
+    spoken: dict[str, dict[str, tuple[str, ...]]] = defaultdict(dict)
     for entry in roster:
         if entry.name == entry.person:
             continue
         key = name_key(entry.name)
         names[key][entry.site] = names[key].get(entry.site, frozenset()) | {entry.person}
-        spoken[entry.site][entry.person] = " ".join(name_words(entry.name))
+        spoken[entry.site][entry.person] = name_words(entry.name)
     sites = {entry.person: entry.site for entry in roster}
     return NameBook(sites, decisions, dict(names), aliases, dict(spoken))
+
+
+def _likeness(words: tuple[str, ...], name: tuple[str, ...]) -> float:
+    """How alike a text and a name are, 0 to 100, in whatever order their words stand."""
+    part = all(any(whole.startswith(word) for whole in name) for word in words)
+    return max(PART_OF_NAME * part, fuzz.token_sort_ratio(" ".join(words), " ".join(name)))
 
 
 def _read_aliases(

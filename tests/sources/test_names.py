@@ -69,6 +69,7 @@ def names(study: Study) -> Names:
         ("Lee Kim", "south", "resolved", "23"),
         ("Marlon Quay", "north", "outside site", "24"),
         ("Zoltan Wick", "north", "off roster", None),
+        ("Anna Strangeworthy", "north", "off roster", None),
         ("???", "north", "off roster", None),
     ],
 )
@@ -83,7 +84,15 @@ def test_what_is_certain_is_resolved(
 
 @pytest.mark.parametrize(
     ("written", "candidate"),
-    [("Beatrix Sallt", "13"), ("Jurgen OBrian-Moor", "12"), ("7", "007"), ("na", "NA")],
+    [
+        ("Beatrix Sallt", "13"),
+        ("Jurgen OBrian-Moor", "12"),
+        ("B. Salt", "13"),
+        ("Bea Salt", "13"),
+        ("Berg Anna", "007"),
+        ("7", "007"),
+        ("na", "NA"),
+    ],
 )
 def test_a_misspelling_stays_open_with_one_candidate(names: Names, written: str, candidate: str) -> None:
     book, _ = names()
