@@ -1,0 +1,1 @@
+"""Figures of the page, one in a file."""

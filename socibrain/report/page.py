@@ -1,0 +1,114 @@
+"""The page: one HTML file that needs nothing else."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from importlib.resources import files
+from pathlib import Path
+
+from jinja2 import Environment, PackageLoader, StrictUndefined
+from markupsafe import Markup
+
+from socibrain.link.finding import Finding, Findings
+from socibrain.report import tables
+from socibrain.report.figures.by_site import drawn_sites
+from socibrain.report.figures.look import as_svg, colour_variables, our_look
+from socibrain.report.gallery import Gallery, gallery, network_position, shown_visit
+from socibrain.report.material import ReportInput
+from socibrain.report.methods import describe_methods
+from socibrain.report.provenance import read_record
+from socibrain.report.whole import write_whole
+from socibrain.report.words import Answer, answer
+
+
+@dataclass(frozen=True)
+class AnsweredHypothesis:
+    """One hypothesis on the page: its answer, its numbers, names of its figures."""
+
+    answer: Answer
+    numbers: tuple[tuple[str, str], ...]
+    undrawn_sites: int
+    readings: tuple[tuple[str, str], ...]
+
+
+def write_report(material: ReportInput, path: str | Path) -> None:
+    """Write the page to ``path``, whole or not at all.
+
+    Raises `OSError` when the file cannot be written.
+    """
+    write_whole(Path(path), render_report(material).encode())
+
+
+def render_report(material: ReportInput) -> str:
+    """The page as text; the same material gives the same text.
+
+    Holds no id of any person.  Parts the study does not have are left out.
+    """
+    figures = gallery(material)
+    drawn = _draw(figures)
+    cohort, findings = material.cohort, material.findings
+    room = Environment(
+        loader=PackageLoader("socibrain.report", "."),
+        autoescape=True,
+        undefined=StrictUndefined,
+        trim_blocks=True,
+        lstrip_blocks=True,
+    )
+    question = network_position(material)[0] if material.questions else ""
+    return room.get_template("page.html.j2").render(
+        material=material,
+        style=_style(),
+        figures=drawn,
+        spreads=[name for name in drawn if name.startswith("spread-")],
+        visit=shown_visit(material),
+        network_question=question.replace("_", " "),
+        answered=_answered(findings, material),
+        glance=tables.glance(material),
+        sites=tables.site_rows(material, question),
+        exclusions=tables.exclusion_rows(cohort.ledger),
+        site_losses=tables.site_loss_rows(cohort.ledger, cohort.columns),
+        left_out=tables.left_out_rows(findings) if findings else None,
+        finding_table=tables.finding_rows(findings, cohort.columns) if findings else None,
+        problems=tables.problem_rows(cohort.problems),
+        methods=describe_methods(material),
+        provenance=read_record(material),
+        many_sites=tables.MANY,
+    )
+
+
+def _draw(figures: Gallery) -> dict[str, Markup]:
+    with our_look():
+        return {name: Markup(as_svg(draw(), name)) for name, draw in figures.items()}
+
+
+def _style() -> Markup:
+    text = files("socibrain.report").joinpath("page.css").read_text(encoding="utf-8")
+    day, night = colour_variables(night=False), colour_variables(night=True)
+    return Markup(
+        f":root {{ {day} }}\n@media screen and (prefers-color-scheme: dark) {{ :root {{ {night} }} }}\n{text}"
+    )
+
+
+def _answered(findings: Findings | None, material: ReportInput) -> list[AnsweredHypothesis]:
+    if findings is None:
+        return []
+    return [
+        AnsweredHypothesis(
+            answer=answer(finding, findings, material.cohort.columns),
+            numbers=tuple(tables.numbers_of(finding, findings)),
+            undrawn_sites=finding.n_sites - len(drawn_sites(finding)),
+            readings=tuple(_readings(finding, material)),
+        )
+        for finding in findings.findings
+    ]
+
+
+def _readings(finding: Finding, material: ReportInput) -> list[tuple[str, str]]:
+    """What higher values of the two measures mean: (label, reading)."""
+    columns = material.cohort.columns
+    named = (finding.hypothesis.predictor, finding.hypothesis.outcome)
+    return [
+        (columns[name].label, columns[name].reading)
+        for name in named
+        if name in columns and columns[name].reading
+    ]
