@@ -139,7 +139,8 @@ def _network(
 
 
 def _refuse_strangers(answers: Answers, homes: Mapping[str, str], faults: Faults) -> None:
-    for chooser, line in answers.first_line.items():
+    """Choosers whom the roster does not know; silent when the roster itself could not be read."""
+    for chooser, line in answers.first_line.items() if homes else ():
         if chooser not in homes:
             faults.add(answers.file, f"line {line}", "unknown-chooser", "who answers is not on the roster",
                        mend_unknown(chooser, homes, "put the person on the roster, or take the row out"),

@@ -120,8 +120,11 @@ def read_names(study: Study, roster: tuple[RosterEntry, ...], faults: Faults) ->
     """The name book of a study: its roster, its alias table and the decisions humans took.
 
     An alias or a decision for somebody who is not on the roster is a grave fault.  Faults cite
-    file and line, never what was written.
+    file and line, never what was written.  Without anybody on the roster (it could not be read)
+    nothing is looked at.
     """
+    if not roster:
+        return name_book((), aliases={}, decisions={})
     return name_book(
         roster, aliases=_read_aliases(study, roster, faults), decisions=read_decisions(study, roster, faults)
     )

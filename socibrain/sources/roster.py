@@ -18,7 +18,8 @@ def read_roster(study: Study, people: PeopleTable, faults: Faults) -> tuple[Rost
     Without a declared roster: everyone in the people table, called by id.
     Grave faults: a person twice; one name for two people of a site (as `name_key` sees it); a
     missing id, site or name; a person or site that the people table does not know; a site other
-    than the people table's.  Their texts hold ids and sites, never names.
+    than the people table's.  Their texts hold ids and sites, never names.  Whoever has a faulty
+    row is still there, by id, so that one fault does not bring forth others.
     """
     homes = {str(person): str(site) for person, site in people.table["site"].items()}
     declared = study.says.roster
@@ -27,6 +28,7 @@ def read_roster(study: Study, people: PeopleTable, faults: Faults) -> tuple[Rost
     needed = tuple(column for column in (declared.person, declared.name, declared.site) if column)
     table = read_table(study.path(declared.file), declared.file, needed, faults)
     found: dict[int, RosterEntry] = {}
+    spare: list[RosterEntry] = []
     for line, row in table or ():
         entry = _entry(declared, row, homes)
         wrong = _wrong(declared, row, entry, homes)
@@ -34,7 +36,9 @@ def read_roster(study: Study, people: PeopleTable, faults: Faults) -> tuple[Rost
             faults.add(declared.file, f"line {line}, column {column}", kind, what, mend)
         if not wrong:
             found[line] = entry
-    return _once_each(declared, found, faults)
+        elif entry.person in homes:
+            spare.append(RosterEntry(entry.person, homes[entry.person], entry.person))
+    return _once_each(declared, found, faults) + tuple(spare)
 
 
 def mend_unknown(person: str, known: Collection[str], otherwise: str) -> str:
@@ -80,7 +84,7 @@ def _wrong(
 
 
 def _once_each(declared: Roster, found: Mapping[int, RosterEntry], faults: Faults) -> tuple[RosterEntry, ...]:
-    """The entries without the later of two that clash; each clash is a fault that cites both lines."""
+    """The entries, one per person; each clash is a fault that cites both lines."""
     persons: dict[str, int] = {}
     names: dict[tuple[str, str], int] = {}
     for line, entry in found.items():
@@ -88,10 +92,10 @@ def _once_each(declared: Roster, found: Mapping[int, RosterEntry], faults: Fault
         if entry.person in persons:
             faults.add(declared.file, f"lines {persons[entry.person]} and {line}", "duplicate-person",
                        f"'{entry.person}' stands twice", "keep one row per person")  # fmt: skip
-        elif (entry.site, name) in names:
+            continue
+        persons[entry.person] = line
+        if names.setdefault((entry.site, name), line) != line:
             faults.add(declared.file, f"lines {names[entry.site, name]} and {line}", "duplicate-name",
                        f"one name stands for two people of site '{entry.site}'",
                        "tell them apart as people do, by a second name or an initial")  # fmt: skip
-        else:
-            persons[entry.person] = names[entry.site, name] = line
     return tuple(found[line] for line in persons.values())

@@ -46,6 +46,7 @@ ROWS = (
     ("21", "Ove Quay"),
     ("22", "n/a"),
 )
+HEADER = "written,site,person,score,suggestion\n"
 WRITTEN = ("lee", "kim", "moor", "berg", "beatrix", "sallt", "anna", "quay", "zoltan", "wick")
 
 
@@ -264,6 +265,12 @@ def test_an_unknown_chooser_is_grave(toy: Toy) -> None:
         ("advice.tsv:line 3", True),
     ]
     assert strangers[0].mend == "did you mean '007'?"
+
+
+def test_an_unreadable_roster_brings_forth_no_other_fault(toy: Toy) -> None:
+    aliases = "written\tperson\nbea\t13\n"
+    reading, faults = replace(toy, roster=(), aliases=aliases, decisions=f"{HEADER}Anna,,14,,\n").read()
+    assert (reading.networks, faults) == ((), [])
 
 
 @pytest.mark.parametrize(("ties", "sites"), [("either", ["south"]), ("both", ["north", "south"])])

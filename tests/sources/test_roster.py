@@ -94,3 +94,11 @@ def test_all_faults_are_told_together(read: Reader) -> None:
         "unknown-site",
         "unknown-person",
     ]
+
+
+def test_one_fault_does_not_bring_forth_others(read: Reader) -> None:
+    roster, _ = read("007\t\tnorth", "NA\tKim Lee\tnorth", "12\tKim Lee\tnrth", "12\tx\tsouth")
+    assert {entry.person: entry.site for entry in roster} == {"007": "north", "NA": "north", "12": "south"}
+    roster, faults = read("007\tKim Lee\tnorth", "NA\tKim Lee\tnorth")
+    assert [entry.person for entry in roster] == ["007", "NA"]
+    assert [fault.kind for fault in faults] == ["duplicate-name"]
