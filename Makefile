@@ -3,7 +3,7 @@ VENV := .venv
 BIN := $(VENV)/bin
 READY := $(VENV)/.ready
 
-.PHONY: demo test check bench clean
+.PHONY: demo testdata test check bench clean
 
 $(READY): pyproject.toml constraints.txt
 	python3 -m venv $(VENV)
@@ -14,7 +14,10 @@ demo: $(READY)
 	$(BIN)/socibrain link analyses/brokers/plan.yaml --out runs/demo
 	$(BIN)/socibrain report runs/demo
 
-test: $(READY)
+testdata: $(READY)
+	$(BIN)/python tests/references/fetch.py
+
+test: testdata
 	$(BIN)/python -m pytest
 
 check: $(READY)
