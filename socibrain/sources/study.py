@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
+import re
+from collections.abc import Iterator
 from dataclasses import dataclass
 from pathlib import Path
 from typing import Annotated, Any, Literal
 
-from pydantic import BeforeValidator, Field, field_validator, model_validator
+from pydantic import BeforeValidator, Field, model_validator
 
 from socibrain.documents import Document, Entry, read_document
 from socibrain.errors import DocumentRefused, Fault
-
-STUDY_FORMAT = 1
 
 
 def _as_text(value: Any) -> Any:
@@ -122,13 +122,6 @@ class BrainInput(Entry):
     """A region without any tie, or with missing weights: refuse the file, or leave the person out."""
     communities: Communities = Communities()
 
-    @field_validator("files")
-    @classmethod
-    def _names_person(cls, value: str) -> str:
-        if "{person}" not in value:
-            raise ValueError("write {person} where the person's id stands in the path")
-        return value
-
 
 class Regions(Entry):
     """The regions, in the order of the matrices' rows."""
@@ -175,14 +168,6 @@ class StudyFile(Entry):
     visits: tuple[Text, ...] = ()
     exclusions: tuple[Exclusion, ...] = ()
 
-    @field_validator("brain")
-    @classmethod
-    def _plain_names(cls, value: dict[str, BrainInput]) -> dict[str, BrainInput]:
-        for name in value:
-            if not name.replace("_", "").isalnum():
-                raise ValueError(f"'{name}': use letters, digits and _ only")
-        return value
-
 
 @dataclass(frozen=True)
 class Study:
@@ -217,46 +202,75 @@ def read_study(path: str | Path) -> Study:
     return study
 
 
-def _contradictions(study: Study) -> list[Fault]:
+def _contradictions(study: Study) -> Iterator[Fault]:
     """Entries that are fine alone and cannot be meant together."""
     says, at = study.says, study.document.fault
-    found = []
     if not says.brain and not says.questionnaire:
-        found.append(
-            at(
-                ("study",),
-                "nothing-to-read",
-                "neither questionnaire nor brain",
-                "add at least one of the two",
-            )
+        yield at(
+            ("study",), "nothing-to-read", "neither questionnaire nor brain", "add at least one of the two"
         )
-    for name in says.questionnaire.questions if says.questionnaire else {}:
-        if name in says.brain or not name.replace("_", "").isalnum():
-            found.append(
-                at(
-                    ("questionnaire", "questions", name),
-                    "bad-name",
-                    "a question needs a name of its own from letters, digits and _",
-                    "rename it",
-                )
+    if len(set(says.visits)) < len(says.visits):
+        yield at(("visits",), "duplicate-visit", "a visit stands twice", "name each visit once")
+    for place, name in enumerate(says.people.numbers):
+        if name in (says.people.id, says.people.site, says.people.role):
+            yield at(("people", "numbers", place), "not-a-number", f"'{name}' is a column of ids or classes",
+                     "take it out")  # fmt: skip
+    yield from _doubtful_questions(study)
+    yield from _doubtful_brains(study)
+    yield from _doubtful_rules(study)
+
+
+def _doubtful_questions(study: Study) -> Iterator[Fault]:
+    says, at = study.says, study.document.fault
+    for name, question in (says.questionnaire.questions if says.questionnaire else {}).items():
+        here = ("questionnaire", "questions", name)
+        if name in says.brain or not _is_name(name):
+            yield at(
+                here, "bad-name", "a question needs a name of its own from letters, digits and _", "rename it"
             )
+        if question.layout == "wide" and "*" not in question.chosen:
+            yield at((*here, "chosen"), "no-pattern", "names no set of columns",
+                     "write * where the columns' names differ, such as friend_*")  # fmt: skip
+
+
+def _doubtful_brains(study: Study) -> Iterator[Fault]:
+    says, at = study.says, study.document.fault
     for name, source in says.brain.items():
+        here = ("brain", name)
+        if not _is_name(name):
+            yield at(here, "bad-name", "an input needs a name from letters, digits and _", "rename it")
+        unknown = sorted(set(re.findall(r"{(.*?)}", source.files)) - {"person", "visit"})
+        if unknown:
+            yield at((*here, "files"), "unknown-placeholder", f"{{{unknown[0]}}} stands for nothing",
+                     "only {person} and {visit} are filled in")  # fmt: skip
+        if "{person}" not in source.files:
+            yield at((*here, "files"), "no-person", "is the same file for everyone",
+                     "write {person} where the person's id stands in the path")  # fmt: skip
         if says.visits and "{visit}" not in source.files:
-            found.append(
-                at(("brain", name, "files"), "no-visit", "visits are declared", "write {visit} into the path")
-            )
+            yield at((*here, "files"), "no-visit", "visits are declared", "write {visit} into the path")
         if not says.visits and "{visit}" in source.files:
-            found.append(
-                at(("brain", name, "files"), "no-visit", "no visits are declared", "add `visits: [...]`")
-            )
+            yield at((*here, "files"), "no-visit", "no visits are declared", "add `visits: [...]`")
+        if source.layout == "matrix" and "first_index" in source.model_fields_set:
+            yield at((*here, "first_index"), "not-used", "is for edge lists only", "take it out")
+
+
+def _doubtful_rules(study: Study) -> Iterator[Fault]:
+    says, at = study.says, study.document.fault
     for number, rule in enumerate(says.exclusions):
+        here = ("exclusions", number)
         if rule.leaves_out_of != "social" and not says.brain:
-            found.append(
-                at(
-                    ("exclusions", number),
-                    "nothing-to-exclude",
-                    "leaves people out of a brain side that is not there",
-                    "write `leaves_out_of: social`",
-                )
-            )
-    return found
+            yield at(here, "nothing-to-exclude", "leaves people out of a brain side that is not there",
+                     "write `leaves_out_of: social`")  # fmt: skip
+        if rule.leaves_out_of == "social" and not says.questionnaire:
+            yield at(here, "nothing-to-exclude", "leaves people out of a social side that is not there",
+                     "write `leaves_out_of: brain`")  # fmt: skip
+        if rule.visit is not None and not says.visits:
+            yield at((*here, "visit"), "no-visit", "no visits are declared", "add `visits: [...]`")
+        for entry in ("person", "visit"):
+            if rule.file is None and entry in rule.model_fields_set:
+                yield at((*here, entry), "not-used", "is for a table of its own, and no file is named",
+                         "add `file:`, or take it out")  # fmt: skip
+
+
+def _is_name(name: str) -> bool:
+    return re.fullmatch(r"[A-Za-z0-9_]+", name) is not None
