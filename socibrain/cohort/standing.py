@@ -64,11 +64,13 @@ def brain_branch(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[B
 
 
 def single_scans(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> list[Leaving]:
-    """Single visits that cannot be used, of people who have another that can."""
+    """Single visits that cannot be used, of people who have another scan that can."""
+    lost = lost_scans(gathered, brains)
+    has_another = {brain.origin.person for brain in brains if _key(brain) not in lost}
     return [
         Leaving(QUALITY, "brain", person, gathered.site(person), visit, f"{source}: {reason}")
-        for (source, person, visit), reason in sorted(lost_scans(gathered, brains).items())
-        if visit
+        for (source, person, visit), reason in sorted(lost.items())
+        if visit and person in has_another
     ]
 
 
