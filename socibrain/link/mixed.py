@@ -53,9 +53,9 @@ def site_contrasts(columns: Array, sites: Codes) -> tuple[Array, Array]:
     basis = np.linalg.qr(columns)[0]
     incidence = (sites[:, None] == np.arange(sites.max() + 1)).astype(np.float64)
     cleared = incidence - basis @ (basis.T @ incidence)
-    directions, roots, _ = np.linalg.svd(cleared, full_matrices=False)
-    kept = roots**2 > VANISHING * np.bincount(sites).max()
-    return directions[:, kept], roots[kept] ** 2
+    sizes, turns = np.linalg.eigh(cleared.T @ cleared)
+    kept = sizes > VANISHING * np.bincount(sites).max()
+    return cleared @ (turns[:, kept] / np.sqrt(sizes[kept])), sizes[kept]
 
 
 def fit(outcome: Array, columns: Array, sites: Codes) -> Fit:
