@@ -88,7 +88,7 @@ def _networks(material: ReportInput) -> str:
         if told
         else ""
     )
-    inputs = list(dict.fromkeys(column.origin for column in material.brain_columns()))
+    inputs = [f"“{name}”" for name in dict.fromkeys(column.origin for column in material.brain_columns())]
     brain = f"Brain measures were computed for each person's network ({listed(inputs)})." if inputs else ""
     return " ".join(
         filter(None, (social, brain, *_brain_choices(material.record), _exclusions(material.record)))
@@ -111,9 +111,8 @@ def _brain_choices(record: Mapping[str, object]) -> list[str]:
             str(choices.get("edges")).replace("_", " "),
             NEGATIVE.get(str(choices.get("negative"))),
         )
-        told.append(
-            f"In {name}, a weight is {EDGES.get(edges, edges)}{f', {negative}' if negative else ''}{sought}."
-        )
+        rule = f", {negative}" if negative else ""
+        told.append(f"In “{name}”, a weight is {EDGES.get(edges, edges)}{rule}{sought}.")
     return told
 
 

@@ -13,7 +13,7 @@ from socibrain.cohort.table import Column
 from socibrain.link.finding import Finding, Findings
 from socibrain.measures.catalogue import all_measures
 from socibrain.report.material import ReportInput
-from socibrain.report.notation import breakdown, count, decimal, level, p_value, share, short
+from socibrain.report.notation import FEW, breakdown, count, decimal, level, p_value, share, short
 from socibrain.report.words import BADGES, answer, spoken
 
 MANY = 40
@@ -66,9 +66,11 @@ def site_rows(material: ReportInput, question: str) -> Rows:
     rows = []
     for (_, site), size in zip(sites.iterrows(), sizes, strict=True):
         row = [str(site["site"]), size]
-        row += [share(_whole(site["answered"]), _whole(site[whole]))] * with_answers
-        row += [share(_whole(site["with_brain"]), _whole(site["people"]))] * with_brain
-        row += [short(float(site[name])) if size.isdecimal() else "–" for name, _ in measures]
+        if with_answers:
+            row.append(share(_whole(site["answered"]), _whole(site[whole])))
+        if with_brain:
+            row.append(share(_whole(site["with_brain"]), _whole(site["people"])))
+        row += [short(float(site[name])) if size != FEW else "–" for name, _ in measures]
         rows.append(tuple(row))
     return Rows((*headings, *(label for _, label in measures)), tuple(rows))
 

@@ -106,10 +106,18 @@ def _found(finding: Finding, columns: Mapping[str, Column]) -> str:
     way = "higher" if finding.estimate > 0 else "lower"
     predictor = spoken(finding.hypothesis.predictor, columns)
     outcome = spoken(finding.hypothesis.outcome, columns)
+    who, than = f"people with higher {predictor}", ""
+    if _is_yes_or_no(finding.hypothesis.predictor, columns):
+        who, than = f"people who count as “{predictor}”", " than people who do not"
     return (
-        f"{place[0].upper()}{place[1:]}, people with higher {predictor} tended to have {way} {outcome}"
+        f"{place[0].upper()}{place[1:]}, {who} tended to have {way} {outcome}{than}"
         f"{_allowing(finding, columns)}."
     )
+
+
+def _is_yes_or_no(name: str, columns: Mapping[str, Column]) -> bool:
+    """Whether a column's unit says that 1 stands for yes."""
+    return name in columns and columns[name].unit.startswith("1 =")
 
 
 def _not_found(finding: Finding, columns: Mapping[str, Column]) -> str:

@@ -16,7 +16,7 @@ from matplotlib.style import context
 
 INK, SOFT, LINE, PAPER = "#23303a", "#5d6b75", "#c9d1d4", "#fffdf9"
 MAIN, MAIN_WASH, SIGN = "#0b6e72", "#cfe3e1", "#b8450f"
-CLASSES = ("#1f55b0", "#cc6a1e", "#57101c", "#7d76ba", "#10807c", "#8a6a00")
+CLASSES = ("#1f55b0", "#cc6a1e", "#420a0b", "#977db0", "#261b46", "#8c5847")
 """Colours of classes: at least 3:1 on the paper and apart for colour-blind readers."""
 SHAPES = ("o", "s", "^", "D", "v", "p")
 """Shapes of classes, so that colour is never needed."""
@@ -32,10 +32,10 @@ AT_NIGHT = {
     SIGN: "#f0905a",
     CLASSES[0]: "#6f9bf2",
     CLASSES[1]: "#e39a4a",
-    CLASSES[2]: "#ffc2c4",
-    CLASSES[3]: "#8d7fdc",
-    CLASSES[4]: "#57d6cc",
-    CLASSES[5]: "#efe06f",
+    CLASSES[2]: "#f0cffe",
+    CLASSES[3]: "#97678e",
+    CLASSES[4]: "#bbf4b5",
+    CLASSES[5]: "#5e764a",
     OTHERS: "#8d9aa2",
 }
 """What each colour becomes on a dark page."""
@@ -46,6 +46,7 @@ SETTINGS: dict[str, object] = {
     "svg.id": None,
     "font.family": "DejaVu Sans",
     "font.size": 10,
+    "text.parse_math": False,
     "text.color": INK,
     "axes.edgecolor": LINE,
     "axes.labelcolor": INK,

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Literal
+
 import numpy as np
 
 from socibrain.link.finding import Finding
@@ -22,9 +24,10 @@ def null_figure(finding: Finding) -> Drawing:
     reach = 1.12 * max(float(np.abs(null).max(initial=0.0)), abs(finding.statistic))
     axes.set_xlim(-reach, reach)
     axes.set_ylim(top=axes.get_ylim()[1] * 1.16)
-    axes.text(
-        finding.statistic, 0.97, f" observed {decimal(finding.statistic)} ", color=INK, size=9,
-        ha=_side(finding.statistic, reach), va="top", transform=axes.get_xaxis_transform(),
+    side = _side(finding.statistic, reach)
+    axes.annotate(
+        f"observed {decimal(finding.statistic)}", (finding.statistic, 0.96), (6 if side == "left" else -6, 0),
+        xycoords=axes.get_xaxis_transform(), textcoords="offset points", color=INK, size=9, ha=side, va="top",
     )  # fmt: skip
     axes.set_xlabel("t when people are shuffled within sites")
     axes.set_yticks([])
@@ -40,7 +43,7 @@ def null_figure(finding: Finding) -> Drawing:
     )
 
 
-def _side(statistic: float, reach: float) -> str:
+def _side(statistic: float, reach: float) -> Literal["left", "right"]:
     """Which end of the text stands at the line: outwards of it where there is room."""
     outwards = abs(statistic) < 0.5 * reach
     return "left" if (statistic > 0) == outwards else "right"

@@ -1,0 +1,182 @@
+"""Figures: colours that everyone can tell apart, counts that are not told, drawings that are right."""
+
+from __future__ import annotations
+
+import itertools
+
+import numpy as np
+import pandas as pd
+import pytest
+
+from socibrain.report.figures.by_site import drawn_sites
+from socibrain.report.figures.flow import read_steps
+from socibrain.report.figures.look import AT_NIGHT, CLASSES, INK, MAIN, OTHERS, PAPER, SHAPES, SIGN, SOFT
+from socibrain.report.figures.person_by_person import person_figure
+from socibrain.report.figures.site_network import (
+    OTHER,
+    choose_site,
+    class_styles,
+    fold_classes,
+    network_figure,
+)
+from socibrain.report.figures.systems import systems_figure
+from socibrain.report.notation import breakdown, share
+from tests.report.made_study import finding, made_flow, made_material
+
+# Machado, Oliveira & Fernandes (2009), full severity, in linear light; from memory.
+SIGHT = {
+    "full": np.eye(3),
+    "no red": np.array(
+        [[0.152286, 1.052583, -0.204868], [0.114503, 0.786281, 0.099216], [-0.003882, -0.048116, 1.051998]]
+    ),
+    "no green": np.array(
+        [[0.367322, 0.860646, -0.227968], [0.280085, 0.672501, 0.047413], [-0.011820, 0.042940, 0.968881]]
+    ),
+    "no blue": np.array(
+        [[1.255528, -0.076749, -0.178779], [-0.078411, 0.930809, 0.147602], [0.004733, 0.691367, 0.303900]]
+    ),
+}
+
+
+def light(colour: str) -> np.ndarray:
+    parts = np.array([int(colour[k : k + 2], 16) for k in (1, 3, 5)]) / 255
+    return np.where(parts <= 0.04045, parts / 12.92, ((parts + 0.055) / 1.055) ** 2.4)
+
+
+def contrast(one: str, other: str) -> float:
+    """Contrast ratio of WCAG 2: (lighter + .05) / (darker + .05)."""
+    weights = np.array([0.2126, 0.7152, 0.0722])
+    low, high = sorted([float(light(one) @ weights), float(light(other) @ weights)])
+    return (high + 0.05) / (low + 0.05)
+
+
+def lab(linear: np.ndarray) -> np.ndarray:
+    """CIE L*a*b* under D65."""
+    to_xyz = np.array(
+        [
+            [0.4124564, 0.3575761, 0.1804375],
+            [0.2126729, 0.7151522, 0.0721750],
+            [0.0193339, 0.1191920, 0.9503041],
+        ]
+    )
+    x, y, z = np.cbrt(np.clip(to_xyz @ np.clip(linear, 0, 1) / [0.95047, 1.0, 1.08883], 1e-9, None))
+    return np.array([116 * y - 16, 500 * (x - y), 200 * (y - z)])
+
+
+def test_the_measure_of_contrast_is_right() -> None:
+    assert contrast("#000000", "#ffffff") == pytest.approx(21)
+    assert contrast("#777777", "#ffffff") == pytest.approx(4.48, abs=0.01)
+
+
+@pytest.mark.parametrize("night", [False, True])
+def test_shapes_stand_out_from_the_page(night: bool) -> None:
+    worn = AT_NIGHT if night else {colour: colour for colour in AT_NIGHT}
+    for colour in (*CLASSES, OTHERS, MAIN, SIGN):
+        assert contrast(worn[colour], worn[PAPER]) >= 3, colour
+    for colour in (INK, SOFT):
+        assert contrast(worn[colour], worn[PAPER]) >= 4.5, colour
+
+
+@pytest.mark.parametrize("night", [False, True])
+@pytest.mark.parametrize("sight", list(SIGHT))
+def test_classes_are_apart_in_everyones_sight(night: bool, sight: str) -> None:
+    worn = [AT_NIGHT[colour] if night else colour for colour in CLASSES]
+    seen = [lab(SIGHT[sight] @ light(colour)) for colour in worn]
+    closest = min(float(np.linalg.norm(one - other)) for one, other in itertools.combinations(seen, 2))
+    assert closest >= 25  # a just noticeable difference is about 2.3 (from memory)
+    assert len(set(SHAPES)) == len(CLASSES)
+
+
+def test_small_classes_are_drawn_together() -> None:
+    roles = ["deck"] * 8 + ["engine"] * 5 + ["helm"] * 2 + ["shore"] * 3
+    assert fold_classes(roles) == ("deck",) * 8 + ("engine",) * 5 + (OTHER,) * 5
+    lone = ["deck"] * 8 + ["engine"] * 5 + ["helm"]
+    assert fold_classes(lone) == ("deck",) * 8 + (OTHER,) * 6
+    assert fold_classes([None] * 6) == (OTHER,) * 6
+
+
+def test_styles_are_one_to_one() -> None:
+    styles = class_styles(("b", "a", OTHER))
+    assert list(styles) == ["a", "b", OTHER]
+    assert len({colour for colour, _ in styles.values()}) == len({shape for _, shape in styles.values()}) == 3
+
+
+def test_the_drawn_site_holds_everyone_and_no_name() -> None:
+    material = made_material()
+    site = choose_site(material, question="advice", column="advice.constraint")
+    assert site is not None
+    drawing = network_figure(site, size_label="constraint (advice)")
+    assert f"{len(site.ties)} people" in drawing.alternative
+    people = [line for line in drawing.figure.axes[0].lines if line.get_marker() != "None"]
+    assert len(people) == len(site.ties)
+    mutual = np.triu((site.ties * site.ties.T), 1).sum()
+    assert len(drawing.figure.axes[0].lines) - len(people) == mutual
+    one_way = site.ties.sum() - 2 * mutual
+    assert len(drawing.figure.axes[0].patches) == one_way
+    hollow = [line for line in people if line.get_markerfacecolor() == PAPER]
+    assert len(hollow) == (~site.answered).sum()
+
+
+def test_no_site_is_drawn_where_none_has_ties() -> None:
+    assert choose_site(made_material(), question="unasked", column="") is None
+
+
+def test_steps_of_the_flow_add_up_and_hide_small_cells() -> None:
+    flow = made_flow(social=True, brain=True)
+    steps = read_steps(flow[flow["branch"] == "social"])
+    assert [step.people for step in steps] == [300, 276, 273]
+    assert all(later.people == step.people - later.left_out for step, later in itertools.pairwise(steps))
+    assert steps[1].reasons == ("≥5  did not answer", "<5  asked to be left out")
+    assert steps[2].reasons == ("no tie under the tie rule in any question",)
+
+
+def test_reasons_with_colons_and_semicolons_are_read_whole() -> None:
+    row = made_flow(social=True, brain=False).head(1).assign(reasons="rest: moved; a lot: 11; other: 7")
+    assert read_steps(row)[0].reasons == ("11  rest: moved; a lot", "7  other")
+
+
+def test_the_line_and_band_are_the_slope_and_its_interval_in_raw_units() -> None:
+    one = finding(estimate=-0.3, ci=(-0.5, -0.1))
+    axes = person_figure(one, "x", "y").figure.axes[0]
+    line = next(each for each in axes.lines if each.get_linewidth() == 2)
+    run, rise = np.ptp(line.get_xdata()), line.get_ydata()[-1] - line.get_ydata()[0]
+    unit = 0.04 / 0.13
+    assert rise / run == pytest.approx(-0.3 * unit)
+    corners = axes.collections[0].get_paths()[0].vertices
+    slopes = (corners[:, 1] / corners[:, 0])[np.abs(corners[:, 0]) > 1e-6]
+    assert (slopes.min(), slopes.max()) == (pytest.approx(-0.5 * unit), pytest.approx(-0.1 * unit))
+
+
+def test_sites_with_fewer_than_five_people_get_no_panel() -> None:
+    assert drawn_sites(finding(n=12 * 5 + 3)) == drawn_sites(finding(n=12 * 5))
+    assert drawn_sites(finding(n=12 * 5 - 1))[-1] != "Low Light"
+
+
+def test_regions_show_their_mean_over_people() -> None:
+    rows = pd.DataFrame(
+        [("a", "one", "s", 0.2), ("b", "one", "s", 0.4), ("a", "two", "s", 0.8)],
+        columns=["person", "region", "system", "rest.p"],
+    )
+    axes = systems_figure(rows, "rest.p", "P").figure.axes[0]
+    dots = next(line for line in axes.lines if line.get_marker() == "D")
+    assert list(dots.get_xdata()) == pytest.approx([0.3, 0.8])
+
+
+def test_hidden_counts_cannot_be_had_from_the_rest() -> None:
+    for counts in ([40, 12, 3], [5, 1], [9, 9, 2]):
+        assert sum(not shown.isdecimal() for shown in breakdown(counts)) >= 2
+    assert breakdown([0, 0, 8]) == ["0", "0", "8"]
+
+
+@pytest.mark.parametrize("whole", range(5, 40))
+def test_shares_bound_small_parts_truthfully(whole: int) -> None:
+    for part in range(whole + 1):
+        told, true = share(part, whole), 100 * part / whole
+        number = float(told.strip("<> %"))
+        if told.startswith("<"):
+            assert true < number
+        elif told.startswith(">"):
+            assert true > number
+        else:
+            assert number == pytest.approx(true, abs=0.5)
+            assert part in (0, whole) or 5 <= part <= whole - 5
