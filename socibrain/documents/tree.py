@@ -171,7 +171,8 @@ def _yaml_fault(shown: str, text: str, error: Exception) -> Fault:
     for sign, found, mend in _YAML_PROBLEMS:
         if sign in problem:
             return Fault(shown, place, "yaml", f"is not valid YAML: {found}", mend)
-    return Fault(shown, place, "yaml", f"is not valid YAML: {problem}", "correct the line")
+    return Fault(shown, place, "yaml", "is not valid YAML from here on",
+                 "correct the line; put text with signs such as : # & * ! | > % @ in quotes")  # fmt: skip
 
 
 _YAML_PROBLEMS = (
@@ -183,5 +184,7 @@ _YAML_PROBLEMS = (
     ("undefined alias", "* points to an & that is not there", "write the value itself, or put it in quotes"),
     ("block end", "this line is not indented as the lines above", "indent entries of one level alike"),
     ("could not find expected ':'", "an entry without a colon", "write `name: value`"),
+    ("expected ','", "a comma, quotation mark or closing bracket is missing before this", "add it"),
+    ("cannot start any token", "a value cannot begin with this sign", "put the value in quotes"),
 )  # fmt: skip
 """What the YAML reader says, what it means, and how to mend it."""

@@ -16,6 +16,9 @@ from socibrain.errors import Faults
 MISSING = "n/a"
 """How a missing cell is written (BIDS); an empty cell is missing too."""
 
+MOST_RAGGED = 5
+"""How many lines of a wrong length are cited before the rest is only counted."""
+
 _NUMBER = re.compile(r"[+-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?")
 _ZEROS = re.compile(r"(?<![0-9])0+(?=[0-9])")
 
@@ -147,13 +150,15 @@ def _checked(
             sound = False
             faults.add(shown, "line 1", "missing-column", f"there is no column '{name}'",
                        nearest(name, [cell for cell in header if cell]))  # fmt: skip
-    for line, cells in rows[1:]:
-        if len(cells) != len(header):
-            sound = False
-            faults.add(shown, f"line {line}", "ragged",
-                       f"has {len(cells)} cells where the header has {len(header)}",
-                       "write one cell per column, n/a where there is no value")  # fmt: skip
-    if not sound:
+    ragged = [(line, len(cells)) for line, cells in rows[1:] if len(cells) != len(header)]
+    for line, width in ragged[:MOST_RAGGED]:
+        faults.add(shown, f"line {line}", "ragged", f"has {width} cells where the header has {len(header)}",
+                   "write one cell per column, n/a where there is no value")  # fmt: skip
+    if len(ragged) > MOST_RAGGED:
+        faults.add(shown, "line 1", "ragged",
+                   f"{len(ragged) - MOST_RAGGED} more lines have another number of cells than the header",
+                   "look at the header first")  # fmt: skip
+    if not sound or ragged:
         return None
     body = rows[1:]
     return TextTable(

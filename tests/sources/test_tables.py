@@ -58,6 +58,7 @@ def test_lines_are_those_of_the_file(tmp_path: Path) -> None:
         ("", (), [("", "empty")]),
         ("\n\t\n", (), [("", "empty")]),
         ("a\tb\n1\n1\t2\t3\n1\t2\n", (), [("line 2", "ragged"), ("line 3", "ragged")]),
+        ("a\tb\tc\n" + "1\t2\n" * 9, (), [(f"line {n}", "ragged") for n in (2, 3, 4, 5, 6, 1)]),
         ("a\tb\ta\n1\t2\t3\n", (), [("line 1", "duplicate-column")]),
         ("a\t\tb\t\n1\t2\t3\t4\n", (), [("line 1", "nameless-column")] * 2),
         ("a\tb\n", ("a", "c", "d"), [("line 1", "missing-column")] * 2),
