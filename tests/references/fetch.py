@@ -26,7 +26,7 @@ def main() -> int:
         named = NAMED.findall(passport.read_text(encoding="utf-8"))
         archives = [text for kind, text in named if kind == "archive"]
         patterns = [text for kind, text in named if kind == "file"]
-        stamp = TARGET / f"{passport.parent.name}.fetched"
+        stamp = TARGET / passport.parent.name / "fetched.txt"
         contents = "\n".join(archives + patterns) + "\n"
         if not archives or (stamp.is_file() and stamp.read_text(encoding="utf-8") == contents):
             continue

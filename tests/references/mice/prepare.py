@@ -36,9 +36,9 @@ def prepare_mice(folder: Path) -> Path:
     ``participants.tsv`` has the columns participant_id, strain, sex; the systems of
     ``regions.tsv`` are the 14 blocks.  Raises `FileNotFoundError` when the data were not fetched.
     """
-    if not FETCHED.with_suffix(".fetched").is_file():
+    if not (FETCHED / "fetched.txt").is_file():
         raise FileNotFoundError("the mouse connectomes are not here: run `make testdata` first")
-    shutil.copytree(FETCHED, folder / "connectomes", ignore=shutil.ignore_patterns("*.csv"))
+    shutil.copytree(FETCHED, folder / "connectomes", ignore=shutil.ignore_patterns("*.csv", "*.txt"))
     people = ["participant_id\tstrain\tsex"]
     people += ["\t".join(row) for row in rows("participants.csv")]
     regions = ["name\tsystem"]
