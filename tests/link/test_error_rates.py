@@ -101,7 +101,7 @@ def test_a_planted_effect_is_found_as_often_as_theory_says() -> None:
         df, shift = PEOPLE - 12, 0.25 * np.sqrt(own @ own)
         expected.append(stats.nct.sf(stats.t.ppf(0.975, df), df, shift))
     assert 0.6 < np.mean(expected) < 0.95
-    # 199 shuffles cost a little power: Davison & Hinkley's rule of thumb, from memory, is under .03
+    # so few shuffles cost a little power (common practice puts it at one or two in a hundred)
     assert inside(found, of, float(np.mean(expected)) - 0.015), (found / of, np.mean(expected))
 
 
