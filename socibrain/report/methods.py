@@ -171,8 +171,8 @@ def _shuffles(findings: Findings) -> str:
     )
     if any(family_size(each, findings) > 1 for each in tested):
         text += (
-            " Within a family of hypotheses p is corrected by the largest |t| over the family in the same "
-            "shuffle (Westfall & Young 1993)."
+            " Within a family of hypotheses p is corrected, step by step, by the most extreme statistic over "
+            "the family in the same shuffle (Westfall & Young 1993)."
         )
     sided = [each.hypothesis.id for each in tested if each.hypothesis.one_sided]
     tests = f" Tests are two-sided, except for {listed(sided)}." if sided else " Tests are two-sided."

@@ -67,7 +67,7 @@ def render_report(material: ReportInput) -> str:
         sites=tables.site_rows(material, question),
         exclusions=tables.exclusion_rows(cohort.ledger),
         site_losses=tables.site_loss_rows(cohort.ledger, cohort.columns),
-        left_out=tables.left_out_rows(findings) if findings else None,
+        left_out=tables.left_out_rows(findings, cohort.columns) if findings else None,
         finding_table=tables.finding_rows(findings, cohort.columns) if findings else None,
         problems=tables.problem_rows(cohort.problems),
         methods=describe_methods(material),

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass
@@ -18,6 +19,8 @@ from socibrain.report.words import BADGES, answer, spoken
 
 MANY = 40
 """Rows after which a table of sites is cut."""
+SIDES = {"social": "questionnaire", "brain": "brain", "both": "both"}
+_LACK = re.compile(r"'([^']+)': (.*?)(?=; '|$)")
 
 
 @dataclass(frozen=True)
@@ -76,18 +79,15 @@ def site_rows(material: ReportInput, question: str) -> Rows:
 
 
 def exclusion_rows(ledger: pd.DataFrame) -> Rows:
-    """People who go no further, by stage and reason; each person counted once in a row."""
-    people = ledger[(ledger["person"].fillna("") != "") & ledger["side"].isin(["social", "brain", "both"])]
+    """People who go no further, by stage and reason; then people who lose one visit only."""
+    people = ledger[(ledger["person"].fillna("") != "") & ledger["side"].isin(list(SIDES))]
+    one_visit = people["visit"].fillna("") != ""
     rows: list[tuple[str, ...]] = []
-    for (side, stage), part in people.groupby(["side", "stage"], sort=False):
-        by_reason = (
-            part.groupby("reason", sort=False)["person"].nunique().sort_values(ascending=False, kind="stable")
-        )
-        shown = breakdown([int(people) for people in by_reason])
-        rows += [
-            (_side(str(side)), str(stage), str(reason), number)
-            for reason, number in zip(by_reason.index, shown, strict=True)
-        ]
+    for part, what in ((people[~one_visit], ""), (people[one_visit], ", one visit")):
+        for (side, stage), group in part.groupby(["side", "stage"], sort=False):
+            rows += [
+                (SIDES[str(side)], f"{stage}{what}", reason, shown) for reason, shown in _by_reason(group)
+            ]
     return Rows(("Side", "Not reached", "Reason", "People"), tuple(rows))
 
 
@@ -102,18 +102,20 @@ def site_loss_rows(ledger: pd.DataFrame, columns: Mapping[str, Column]) -> Rows:
     return Rows(("Measure without a value", "Reason", "Sites"), tuple(rows))
 
 
-def left_out_rows(findings: Findings) -> Rows:
-    """People in both branches whom a family had to leave out, by reason."""
-    rows: list[tuple[str, ...]] = []
-    for family, part in findings.left_out.groupby("family", sort=False):
-        by_reason = (
-            part.groupby("reason", sort=False)["person"].nunique().sort_values(ascending=False, kind="stable")
-        )
-        shown = breakdown([int(people) for people in by_reason])
-        rows += [
-            (str(family), str(reason), number) for reason, number in zip(by_reason.index, shown, strict=True)
-        ]
-    return Rows(("Family of hypotheses", "Reason", "People"), tuple(rows))
+def left_out_rows(findings: Findings, columns: Mapping[str, Column]) -> Rows:
+    """People whom a family of hypotheses had to leave out, by each thing that they lack."""
+    lacks = [
+        (str(family), spoken(column, columns) if column else "", why, str(person))
+        for family, person, reason in findings.left_out[["family", "person", "reason"]].to_numpy().tolist()
+        for column, why in _LACK.findall(str(reason)) or [("", str(reason))]
+    ]
+    table = pd.DataFrame(lacks, columns=["family", "column", "reason", "person"])
+    rows = [
+        (str(family), _sentence(str(column)), reason, shown)
+        for (family, column), group in table.groupby(["family", "column"], sort=False)
+        for reason, shown in _by_reason(group)
+    ]
+    return Rows(("Family", "Lacks", "Reason", "People"), tuple(rows))
 
 
 def problem_rows(problems: pd.DataFrame) -> Rows:
@@ -132,7 +134,6 @@ def finding_rows(findings: Findings, columns: Mapping[str, Column]) -> Rows:
             each.hypothesis.id,
             spoken(each.hypothesis.predictor, columns),
             spoken(each.hypothesis.outcome, columns),
-            each.hypothesis.role,
             f"{each.n} / {each.n_sites}",
             decimal(each.estimate),
             _interval(each.ci_low, each.ci_high),
@@ -143,7 +144,7 @@ def finding_rows(findings: Findings, columns: Mapping[str, Column]) -> Rows:
         for each in findings.findings
     ]
     headings = (
-        "Hypothesis", "Predictor", "Outcome", "Role", "People / sites", "Slope", f"{level(alpha)} interval",
+        "Hypothesis", "Predictor", "Outcome", "People / sites", "Slope", f"{level(alpha)} interval",
         "p", "p in family", "Answer",
     )  # fmt: skip
     return Rows(headings, tuple(rows))
@@ -190,8 +191,12 @@ def _whole(value: object) -> int:
     return 0 if math.isnan(number) else round(number)
 
 
-def _side(side: str) -> str:
-    return {"social": "questionnaire", "brain": "brain", "both": "both"}[side]
+def _by_reason(people: pd.DataFrame) -> list[tuple[str, str]]:
+    """Each reason with its people, most frequent first; a person counts once a reason."""
+    number = people.groupby("reason", sort=False)["person"].nunique()
+    number = number.sort_values(ascending=False, kind="stable")
+    shown = breakdown([int(each) for each in number])
+    return [(str(reason), each) for reason, each in zip(number.index, shown, strict=True)]
 
 
 def _sentence(text: str) -> str:

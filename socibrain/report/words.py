@@ -61,12 +61,13 @@ def answer(finding: Finding, findings: Findings, columns: Mapping[str, Column]) 
 def spoken(name: str, columns: Mapping[str, Column]) -> str:
     """A column as it is called inside a sentence: its label, without a capital to begin with.
 
-    >>> spoken("years_of_service", {})
-    'years of service'
+    >>> spoken("years_of_service", {}), spoken("scans.head_motion", {})
+    ('years of service', 'head motion (scans)')
     """
     label = columns[name].label if name in columns else name
     if label == name:
-        label = name.replace("_", " ").replace(".", ": ")
+        origin, _, own = name.replace("_", " ").rpartition(".")
+        label = f"{own} ({origin})" if origin else own
     return label[0].lower() + label[1:] if label[1:2].islower() else label
 
 
@@ -178,9 +179,14 @@ def _notes(finding: Finding, findings: Findings, verdict: Verdict) -> list[str]:
     notes += _disagreement(finding, alpha)
     if finding.status == "boundary":
         notes.append("The variance between sites was estimated as zero, the lowest value it can take.")
+    notes += [_as_sentence(note) for note in finding.notes]
     if finding.p_permutation <= finding.smallest_p * (1 + 1e-9):
         notes.append(f"The p is the smallest that {_arrangements(finding)} can give.")
     return notes
+
+
+def _as_sentence(text: str) -> str:
+    return f"{text[:1].upper()}{text[1:].rstrip('.')}."
 
 
 def _disagreement(finding: Finding, alpha: float) -> list[str]:

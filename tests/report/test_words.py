@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import pytest
 
 from socibrain.cohort.table import Column
@@ -153,3 +155,8 @@ def test_names_inside_sentences() -> None:
     assert spoken("years_of_service", COLUMNS) == "years of service"
     assert listed([]) == ""
     assert listed(["a", "b"]) == "a and b"
+
+
+def test_what_was_coded_or_dropped_on_the_way_is_told() -> None:
+    said = told(replace(finding(), notes=("2 of 12 sites have one person only",)))
+    assert "2 of 12 sites have one person only." in said.notes

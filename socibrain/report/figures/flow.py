@@ -15,6 +15,7 @@ from socibrain.report.notation import breakdown, count
 
 HEADINGS = {"social": "Questionnaire", "brain": "Brain networks"}
 ROW, COLUMN, LABEL = 1.0, 3.5, 1.6
+MOST = 2
 SHOWN = ["label", "people", "left_out", "reasons"]
 _REASON = re.compile(r"(.+?): (\d+)(?:; |$)")
 
@@ -78,8 +79,12 @@ def _draw_branch(axes: Axes, left: float, heading: str, steps: list[Step]) -> No
 
 
 def _draw_loss(axes: Axes, left: float, middle: float, step: Step) -> None:
-    lines = [f"− {count(step.left_out)}", *(line for each in step.reasons[:3] for line in _fold(each))]
-    if len(step.reasons) > 3:
+    room = 2 if len(step.reasons) == 1 else 1
+    lines = [
+        f"− {count(step.left_out)}",
+        *(line for each in step.reasons[:MOST] for line in _fold(each, lines=room)),
+    ]
+    if len(step.reasons) > MOST:
         lines.append("and other reasons, see below")
     axes.plot([left, left + 0.18], [middle] * 2, color=LINE, lw=1.2)
     axes.text(left + 0.24, middle, lines[0], size=9, color=INK, weight="bold", va="center_baseline")
@@ -101,8 +106,8 @@ def _draw_meeting(axes: Axes, step: Step, depths: list[int]) -> None:
     )  # fmt: skip
 
 
-def _fold(reason: str) -> list[str]:
-    return textwrap.wrap(reason, 36, max_lines=2, placeholder=" …")
+def _fold(reason: str, *, lines: int) -> list[str]:
+    return textwrap.wrap(reason, 38, max_lines=lines, placeholder=" …")
 
 
 def _alternative(branches: dict[str, list[Step]], both: list[Step]) -> str:
