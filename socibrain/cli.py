@@ -12,6 +12,7 @@ from typing import Any
 
 import click
 import pandas as pd
+from rich import box
 from rich.console import Console
 from rich.table import Table
 
@@ -62,7 +63,8 @@ def audit(study: Path, out: Path | None, workers: int | None, as_json: bool) -> 
     else:
         _print("Flow", found.flow)
         _print("Sites", found.sites)
-        _print("Names", found.names)
+        if len(found.names):
+            _print("What was written", found.names)
         _print_problems(found.problems)
     if found.problems["grave"].any():
         raise SystemExit(4)
@@ -129,7 +131,9 @@ def catalogue(name: str | None, as_json: bool) -> None:
     if as_json:
         _json({"measures": table})
     elif name is None:
-        _print("Measures", table[["name", "side", "scale", "unit", "reading"]])
+        for (side, scale), some in table.groupby(["side", "scale"], sort=False):
+            _print(f"{side}, by {scale}", some[["name", "label"]])
+        click.echo("socibrain catalogue NAME shows a measure's passport")
     else:
         for key, value in table.iloc[0].items():
             click.echo(f"{key:>10}  {value}")
@@ -171,7 +175,7 @@ def _json(tables: dict[str, pd.DataFrame]) -> None:
 
 
 def _print(title: str, table: pd.DataFrame) -> None:
-    shown = Table(title=title, title_justify="left", title_style="bold")
+    shown = Table(title=title, title_justify="left", title_style="bold", box=box.SIMPLE_HEAD)
     for name in table.columns:
         numeric = table[name].dtype.kind in "iuf"
         shown.add_column(str(name).replace("_", " "), justify="right" if numeric else "left")

@@ -72,9 +72,11 @@ def _sites(gathered: Gathered, branches: list[Branch]) -> pd.DataFrame:
 
 
 def _names(tally: pd.DataFrame) -> pd.DataFrame:
-    """Per question: how many answered, and what became of the names they wrote."""
+    """Per question: how people stand, and what became of the names they wrote; one row per count."""
     if tally.empty:
-        return pd.DataFrame()
-    counts = tally.groupby("question", sort=False).sum(numeric_only=True)
-    states = tally.groupby(["question", "state"], sort=False).size().unstack(fill_value=0)
-    return states.join(counts).reset_index()
+        return pd.DataFrame(columns=["count"])
+    people = tally.groupby(["state", "question"], sort=False).size().unstack(fill_value=0)
+    people.index = pd.Index([f"people who {state}" for state in people.index])
+    counts = tally.groupby("question", sort=False).sum(numeric_only=True).T.astype(int)
+    counts.index = pd.Index([f"names {str(fate).replace('_', ' ')}" for fate in counts.index])
+    return pd.concat([people, counts]).rename_axis("count").reset_index()

@@ -41,7 +41,11 @@ def brain_branch(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[B
     reasons = lost_scans(gathered, brains)
     usable = {b.origin.person for b in brains if _key(b) not in reasons}
     scanned = {b.origin.person for b in brains} & gathered.scanned
-    leavings = []
+    leavings = [
+        Leaving(INVITED, "brain", person, gathered.site(person), "", "not invited to be scanned")
+        for person in gathered.people.ids
+        if person not in gathered.invited
+    ]
     for person in sorted(gathered.invited):
         site = gathered.site(person)
         if person not in scanned:

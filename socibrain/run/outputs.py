@@ -36,6 +36,7 @@ FINDINGS_SAY = {
     "shuffles": "shuffles run", "exhaustive": "whether every distinct arrangement was enumerated",
     "smallest_p": "smallest p that was attainable",
     "status": "ok, boundary (site variance 0), refused or failed", "reason": "why, where refused or failed",
+    "notes": "what was coded, dropped or advised on the way",
     "role": "confirmatory or exploratory", "family": "hypotheses corrected together",
     "check_difference": "largest difference from the same fit by statsmodels",
 }  # fmt: skip
