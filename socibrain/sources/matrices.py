@@ -32,9 +32,9 @@ def read_matrix(
     content = _content(path, origin.file, faults)
     if content is None:
         return None
-    names: tuple[str, ...] = ()
-    suffix = path.suffix.lower()
+    names: tuple[str, ...] | None = ()
     weights: Array | None
+    suffix = path.suffix.lower()
     if suffix in SUFFIXES:
         weights = read_array(content, suffix, source.variable, origin.file, faults)
     elif source.layout == "edge_list":
@@ -43,8 +43,8 @@ def read_matrix(
         table = read_numbers(content, origin.file, faults)
         if table is None:
             return None
-        weights, names = table.values, _names(table)
-    if weights is None or not _fits(weights, n_regions, origin.file, faults):
+        weights, names = table.values, _names(table, origin.file, faults)
+    if weights is None or names is None or not _fits(weights, n_regions, origin.file, faults):
         return None
     weights.setflags(write=False)
     return MatrixRecord(origin, weights, names)
@@ -65,10 +65,20 @@ def _content(path: Path, shown: str, faults: Faults) -> bytes | None:
     return content
 
 
-def _names(table: NumberTable) -> tuple[str, ...]:
-    """The regions as the file calls them: its header without the corner, or its first column."""
-    corner = len(table.header) - table.values.shape[1]
-    return table.header[corner:] if corner in (0, 1) else table.names
+def _names(table: NumberTable, shown: str, faults: Faults) -> tuple[str, ...] | None:
+    """The regions as the file calls them (its header without the corner, or its first column).
+
+    None when the header has another number of names than there are columns.
+    """
+    n_columns = table.values.shape[1]
+    corner = len(table.header) - n_columns
+    if not table.header:
+        return table.names
+    if corner == 0 or (corner == 1 and table.names):
+        return table.header[corner:]
+    faults.add(shown, "line 1", "ragged", f"has {len(table.header)} names for {n_columns} columns of numbers",
+               "name every column, or none")  # fmt: skip
+    return None
 
 
 def _fits(weights: Array, n_regions: int | None, shown: str, faults: Faults) -> bool:

@@ -71,9 +71,9 @@ class _Layout:
         lines = [line.decode("utf-8", "replace") for line in content.split(b"\n", 3)[:3]]
         separator = next((mark for mark in "\t," if mark in lines[0]), " ")
         rows = [_cells(line, separator) for line in lines]
-        has_header = 2 * sum(not _looks_numeric(cell) for cell in rows[0]) > len(rows[0])
-        header = tuple(rows.pop(0)) if has_header else ()
-        corner_empty = bool(header) and header[0] == ""
+        corner_empty = rows[0][:1] == [""]
+        mostly_text = 2 * sum(not _looks_numeric(cell) for cell in rows[0]) > len(rows[0])
+        header = tuple(rows.pop(0)) if corner_empty or mostly_text else ()
         named = bool(rows) and (corner_empty or all(not _looks_numeric(row[0]) for row in rows if row))
         return cls(separator, header, named, len(rows[0]) if rows else 0)
 
