@@ -35,16 +35,27 @@ def describe_columns(gathered: Gathered, names: Iterable[str]) -> dict[str, Colu
     for name in names:
         if name in known:
             described[name] = _measured(name, *known[name])
+        elif name in gathered.scan_values:
+            described[name] = _of_scans(name)
         else:
-            label = gathered.people.labels.get(name, {})
-            text = KEYS.get(name) or str(label.get("Description", ""))
-            if name in gathered.scan_values:
-                text = f"column '{name.split('.', 1)[1]}' of an exclusion table, by scan"
-            described[name] = Column(
-                name, str(label.get("LongName", name)), text, str(label.get("Units", "")), "",
-                "not given", "", "", "", None, None,
-            )  # fmt: skip
+            described[name] = _attribute(gathered, name)
     return described
+
+
+def _attribute(gathered: Gathered, name: str) -> Column:
+    """A column of the people table, in the words of its sidecar."""
+    said = gathered.people.labels.get(name, {})
+    text = KEYS.get(name) or str(said.get("Description", ""))
+    label = str(said.get("LongName", name.replace("_", " ")))
+    return Column(name, label, text, str(said.get("Units", "")), "", "not given", "", "", "", None, None)
+
+
+def _of_scans(name: str) -> Column:
+    """A number that an exclusion rule looks at, scan by scan."""
+    table, column = name.split(".", 1)
+    label = f"{column.replace('_', ' ')} ({table})"
+    text = f"column '{column}' of the table of scans '{table}'"
+    return Column(name, label, text, "", "", "not given", "", "", table, None, None)
 
 
 def _measured(name: str, origin: str, measure: str) -> Column:

@@ -14,7 +14,8 @@ class Column:
     """What a column holds: enough for a data dictionary and a caption.
 
     ``measure`` is '' for attributes that came with the people table; ``origin`` is the question
-    or brain input a measure was taken on ('' for attributes).
+    or brain input a measure was taken on, or the table of scans a value stands in ('' for
+    attributes).
     """
 
     name: str

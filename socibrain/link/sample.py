@@ -46,7 +46,7 @@ def draw_sample(cohort: Cohort, hypotheses: Sequence[Hypothesis], *, visit: str,
     reasons = dict.fromkeys(everyone["person"], f"no usable scan at visit '{visit}'")
     for person, lacks in zip(rows["person"], missing.to_numpy(), strict=True):
         lacking = [name for name, lack in zip(columns, lacks, strict=True) if lack]
-        told = [f"'{name}': {_why(cohort, name, person, visit)}" for name in lacking]
+        told = dict.fromkeys(_why(cohort, name, person, visit) for name in lacking)
         reasons[person] = "; ".join(told or ["no site"])
     table = rows[~lost].sort_values(["site", "person"], ignore_index=True)
     gone = everyone[~everyone["person"].isin(table["person"])]
@@ -78,13 +78,13 @@ def _missing(column: pd.Series) -> NDArray[np.bool_]:
 def _why(cohort: Cohort, name: str, person: str, visit: str) -> str:
     """Why this person has no value: what the ledger says of that side, or when there is none."""
     about = cohort.columns.get(name)
-    if about is None or not about.measure:
-        return "missing"
+    if about is None or not about.origin:
+        return f"'{name}': missing"
     side = "social" if about.origin in {network.question for network in cohort.social} else "brain"
     ledger = cohort.ledger
     mine = (ledger["person"] == person) & (ledger["side"] == side) & ledger["visit"].isin([visit, ""])
     told = list(dict.fromkeys(ledger.loc[mine, "reason"]))
-    return ", ".join(told) if told else f"undefined ({about.undefined})"
+    return ", ".join(told) if told else f"'{name}': undefined ({about.undefined})"
 
 
 def _refuse_unknown(cohort: Cohort, columns: Sequence[str]) -> None:

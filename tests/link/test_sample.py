@@ -41,7 +41,7 @@ def test_everyone_is_in_or_has_a_reason() -> None:
     assert list(sample.table["person"]) == ["a"]
     assert sample.left_out.to_numpy().tolist() == [
         ["first", "b", "s", "'age': missing"],
-        ["first", "c", "s", "'rest.strength': not scanned"],
+        ["first", "c", "s", "not scanned"],
         ["first", "d", "s", "no usable scan at visit '1'"],
         ["first", "e", "t", "'rest.strength': undefined (never)"],
         ["first", "f", "t", "'sex': missing"],
