@@ -20,7 +20,9 @@ from socibrain.report.words import BADGES, answer, spoken
 MANY = 40
 """Rows after which a table of sites is cut."""
 SIDES = {"social": "questionnaire", "brain": "brain", "both": "both"}
-_LACK = re.compile(r"'([^']+)': (.*?)(?=; '|$)")
+_NEXT_REASON = re.compile(r"; (?![^()]*\))")
+"""Between two reasons; a semicolon inside brackets belongs to its reason."""
+_COLUMN = re.compile(r"^'([^']+)'(?=: )")
 
 
 @dataclass(frozen=True)
@@ -103,19 +105,19 @@ def site_loss_rows(ledger: pd.DataFrame, columns: Mapping[str, Column]) -> Rows:
 
 
 def left_out_rows(findings: Findings, columns: Mapping[str, Column]) -> Rows:
-    """People whom a family of hypotheses had to leave out, by each thing that they lack."""
-    lacks = [
-        (str(family), spoken(column, columns) if column else "", why, str(person))
-        for family, person, reason in findings.left_out[["family", "person", "reason"]].to_numpy().tolist()
-        for column, why in _LACK.findall(str(reason)) or [("", str(reason))]
+    """People whom a family of hypotheses had to leave out, by each reason that holds for them."""
+    single = [
+        (str(family), _with_label(reason, columns), str(person))
+        for family, person, told in findings.left_out[["family", "person", "reason"]].to_numpy().tolist()
+        for reason in _NEXT_REASON.split(str(told))
     ]
-    table = pd.DataFrame(lacks, columns=["family", "column", "reason", "person"])
+    table = pd.DataFrame(single, columns=["family", "reason", "person"])
     rows = [
-        (str(family), _sentence(str(column)), reason, shown)
-        for (family, column), group in table.groupby(["family", "column"], sort=False)
+        (str(family), reason, shown)
+        for family, group in table.groupby("family", sort=False)
         for reason, shown in _by_reason(group)
     ]
-    return Rows(("Family", "Lacks", "Reason", "People"), tuple(rows))
+    return Rows(("Family", "Reason", "People"), tuple(rows))
 
 
 def problem_rows(problems: pd.DataFrame) -> Rows:
@@ -189,6 +191,11 @@ def _interval(low: float, high: float, places: int = 2) -> str:
 def _whole(value: object) -> int:
     number = float(str(value))
     return 0 if math.isnan(number) else round(number)
+
+
+def _with_label(reason: str, columns: Mapping[str, Column]) -> str:
+    """A reason that begins with a quoted column name, with the column's label there."""
+    return _COLUMN.sub(lambda found: _sentence(spoken(found[1], columns)), reason)
 
 
 def _by_reason(people: pd.DataFrame) -> list[tuple[str, str]]:

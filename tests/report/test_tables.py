@@ -30,15 +30,17 @@ def test_sites_without_a_value_are_counted_once() -> None:
     )
 
 
-def test_people_are_counted_at_each_thing_they_lack() -> None:
-    told = ["'age': missing; 'advice.constraint': did not answer (a; b)"] * 7 + ["'age': missing"] * 6
+def test_people_are_counted_at_each_reason_that_holds_for_them() -> None:
+    both = "did not answer; 'age': missing; 'advice.constraint': undefined (nobody; or nothing)"
+    told = [both] * 7 + ["'age': missing"] * 6
     left = pd.DataFrame(
         {"family": "all", "person": [f"p{k}" for k in range(13)], "site": "x", "reason": told}
     )
     left.loc[13] = ["all", "p13", "x", "no site"]
     rows = left_out_rows(replace(findings([finding()]), left_out=left), COLUMNS).rows
     assert rows == (
-        ("all", "Age", "missing", "13"),
-        ("all", "Constraint (advice)", "did not answer (a; b)", "7"),
-        ("all", "", "no site", "<5"),
+        ("all", "Age: missing", "13"),
+        ("all", "did not answer", "≥5"),
+        ("all", "Constraint (advice): undefined (nobody; or nothing)", "7"),
+        ("all", "no site", "<5"),
     )
