@@ -1,0 +1,141 @@
+"""The main job on the demo cohort: planted effects are found, the null one is not, nobody is lost."""
+
+from __future__ import annotations
+
+import json
+from pathlib import Path
+
+import numpy as np
+import pandas as pd
+import pytest
+
+import socibrain
+from socibrain.cli import main
+from socibrain.run.stages import Answer, report_run
+
+PLAN = Path(__file__).parents[1] / "analyses" / "brokers" / "plan.yaml"
+STUDY = PLAN.parents[2] / "demo_cohort" / "study.yaml"
+
+
+@pytest.fixture(scope="module")
+def run(tmp_path_factory: pytest.TempPathFactory) -> Path:
+    return tmp_path_factory.mktemp("demo") / "run"
+
+
+@pytest.fixture(scope="module")
+def answer(run: Path) -> Answer:
+    return socibrain.link(PLAN, out=run)
+
+
+def row(answer: Answer, hypothesis: str) -> pd.Series:
+    return answer.table.set_index("id").loc[hypothesis]
+
+
+def test_the_planted_slope_is_found(answer: Answer) -> None:
+    """Planted: -.3; the issue allows .1 on either side in the committed files."""
+    found = row(answer, "constraint_participation")
+    assert found["estimate"] == pytest.approx(-0.3, abs=0.1)
+    assert found["p_family"] < 0.05
+
+
+def test_club_members_have_lower_modularity_as_planted(answer: Answer) -> None:
+    found = row(answer, "club_modularity")
+    assert found["estimate"] < 0
+    assert found["p_family"] < 0.05
+    assert found["n_sites"] >= 8
+
+
+def test_what_was_not_planted_is_not_found(answer: Answer) -> None:
+    found = row(answer, "betweenness_connectivity")
+    assert found["p_family"] > 0.05
+    assert found["ci_low"] < 0 < found["ci_high"]
+
+
+def test_statsmodels_fits_the_same(answer: Answer) -> None:
+    """Four digits is what its optimiser reaches on variances; slopes and t are closer."""
+    assert answer.table["check_difference"].max() < 1e-4
+
+
+def test_everyone_invited_is_analysed_or_accounted_for(answer: Answer, run: Path) -> None:
+    ledger = pd.read_csv(run / "ledger.csv", keep_default_na=False, dtype=str)
+    people = set(answer.cohort.persons["person"])
+    for finding in answer.findings.findings:
+        gone = ledger[ledger["stage"] == f"family {finding.hypothesis.family}"]["person"]
+        assert not gone.duplicated().any()
+        assert set(gone) | set(finding.people) == people
+        assert not set(gone) & set(finding.people)
+    assert (ledger["reason"] != "").all()
+
+
+def test_position_is_read_off_the_whole_network(answer: Answer) -> None:
+    """People who were never scanned have positions, and are there when others' are computed."""
+    persons = answer.cohort.persons
+    never_scanned = persons[persons["rest.modularity"].isna()]
+    assert never_scanned["advice.constraint"].notna().sum() > 100
+    for network in answer.cohort.social:
+        assert len(network.people) == (persons.drop_duplicates("person")["site"] == network.site).sum()
+
+
+def test_who_did_not_answer_has_no_position_and_is_still_named(answer: Answer) -> None:
+    persons = answer.cohort.persons.drop_duplicates("person").set_index("person")
+    silent = {
+        person
+        for network in answer.cohort.social
+        if network.question == "advice"
+        for person, spoke in zip(network.people, network.answered, strict=True)
+        if not spoke
+    }
+    assert len(silent) == 25
+    assert persons.loc[sorted(silent), "advice.constraint"].isna().all()
+    assert (persons.loc[sorted(silent), "advice.in_degree"] > 0).any()
+
+
+def test_every_column_is_in_the_dictionary(answer: Answer, run: Path) -> None:
+    for stem in ("persons", "sites", "findings", "ledger"):
+        header = (run / f"{stem}.csv").read_text(encoding="utf-8").splitlines()[0].split(",")
+        said = json.loads((run / f"{stem}.json").read_text(encoding="utf-8"))
+        assert set(header) == set(said), stem
+        assert all(entry["Description"] for entry in said.values()), stem
+
+
+def test_ids_survive_as_text(run: Path, answer: Answer) -> None:
+    ids = {line.split(",")[0] for line in (run / "persons.csv").read_text(encoding="utf-8").splitlines()}
+    assert {"sub-007", "sub-NA", "sub-1e5"} <= ids
+
+
+def test_a_second_run_gives_the_same_bytes_with_another_number_of_workers(
+    run: Path, answer: Answer, tmp_path: Path
+) -> None:
+    tables = [path for path in run.iterdir() if path.suffix in (".csv", ".json", ".parquet", ".npz")]
+    before = {path.name: path.read_bytes() for path in tables if path.name != "run.json"}
+    again = socibrain.link(PLAN, out=run, workers=1)
+    assert again.table.equals(answer.table)
+    assert {name: (run / name).read_bytes() for name in before} == before
+
+
+def test_the_null_behind_every_p_is_kept(run: Path, answer: Answer) -> None:
+    with np.load(run / "nulls.npz") as nulls:
+        for finding in answer.findings.findings:
+            null = nulls[finding.hypothesis.id]
+            beyond = (np.abs(null) >= abs(finding.statistic) * (1 - 1e-9)).sum()
+            assert finding.p_permutation == pytest.approx((beyond + 1) / (len(null) + 1))
+
+
+def test_the_page_is_written_from_the_run(run: Path, answer: Answer) -> None:
+    page = report_run(run)
+    text = page.read_text(encoding="utf-8")
+    assert text.count("<svg") >= 6
+    assert "sub-007" not in text
+    assert len(text) < 2_000_000
+
+
+def test_a_run_whose_inputs_changed_is_refused(
+    answer: Answer, run: Path, tmp_path: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    record = json.loads((run / "run.json").read_text(encoding="utf-8"))
+    record["inputs"]["roster.tsv"] = "0" * 64
+    (tmp_path / "run.json").write_text(json.dumps(record), encoding="utf-8")
+    with pytest.raises(SystemExit) as left:
+        main(["report", str(tmp_path)])
+    assert left.value.code == 6
+    assert "roster.tsv" in capsys.readouterr().err
