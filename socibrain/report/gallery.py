@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from functools import partial
-from pathlib import Path
 
 from socibrain.cohort.table import Column
 from socibrain.link.finding import Finding
@@ -17,7 +16,6 @@ from socibrain.report.figures.site_network import choose_site, network_figure
 from socibrain.report.figures.spread import sites_with_enough, spread_figure
 from socibrain.report.figures.systems import systems_figure
 from socibrain.report.material import ReportInput
-from socibrain.report.whole import write_whole
 from socibrain.report.words import spoken
 
 Gallery = dict[str, Callable[[], Drawing]]
@@ -40,8 +38,8 @@ def gallery(material: ReportInput) -> Gallery:
     return found
 
 
-def save_figure(material: ReportInput, which: str, path: str | Path, *, dots_per_inch: int = 160) -> None:
-    """Write one figure of the page as PNG, whole or not at all.
+def figure_png(material: ReportInput, which: str, *, dots_per_inch: int = 160) -> bytes:
+    """One figure of the page as PNG.
 
     Raises `KeyError` that lists the figures there are when ``which`` is not one of them.
     """
@@ -50,7 +48,7 @@ def save_figure(material: ReportInput, which: str, path: str | Path, *, dots_per
         raise KeyError(f"there is no figure '{which}'; there are: {', '.join(figures)}")
     with our_look():
         drawing = figures[which]()
-    write_whole(Path(path), as_png(drawing, dots_per_inch))
+    return as_png(drawing, dots_per_inch)
 
 
 def network_position(material: ReportInput) -> tuple[str, str]:

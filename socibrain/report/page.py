@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from importlib.resources import files
-from pathlib import Path
 
 from jinja2 import Environment, PackageLoader, StrictUndefined
 from markupsafe import Markup
@@ -17,7 +16,6 @@ from socibrain.report.gallery import Gallery, gallery, network_position, shown_v
 from socibrain.report.material import ReportInput
 from socibrain.report.methods import describe_methods
 from socibrain.report.provenance import read_record
-from socibrain.report.whole import write_whole
 from socibrain.report.words import Answer, answer
 
 
@@ -29,14 +27,6 @@ class AnsweredHypothesis:
     numbers: tuple[tuple[str, str], ...]
     undrawn_sites: int
     readings: tuple[tuple[str, str], ...]
-
-
-def write_report(material: ReportInput, path: str | Path) -> None:
-    """Write the page to ``path``, whole or not at all.
-
-    Raises `OSError` when the file cannot be written.
-    """
-    write_whole(Path(path), render_report(material).encode())
 
 
 def render_report(material: ReportInput) -> str:

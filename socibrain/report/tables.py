@@ -19,6 +19,9 @@ from socibrain.report.words import BADGES, answer, spoken
 
 MANY = 40
 """Rows after which a table of sites is cut."""
+
+SITE_MEASURES = ("site_density", "site_reciprocity", "rich_club_p", "rich_club_from_degree")
+"""Measures of a site that its row shows; sites.csv has them all."""
 SIDES = {"social": "questionnaire", "brain": "brain", "both": "both"}
 _NEXT_REASON = re.compile(r"; (?![^()]*\))")
 """Between two reasons; a semicolon inside brackets belongs to its reason."""
@@ -58,10 +61,8 @@ def site_rows(material: ReportInput, question: str) -> Rows:
     sites = material.cohort.sites.sort_values("site").head(MANY)
     measures = [
         (name, passport.label)
-        for name, passport in (
-            (name, all_measures().get(str(name).partition(".")[2])) for name in sites.columns
-        )
-        if passport and str(name).startswith(f"{question}.")
+        for name, passport in ((f"{question}.{each}", all_measures()[each]) for each in SITE_MEASURES)
+        if name in sites
     ]
     with_answers, with_brain = "answered" in sites, "with_brain" in sites and bool(sites["with_brain"].any())
     whole = "on_roster" if with_answers else "people"

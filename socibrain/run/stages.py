@@ -154,9 +154,9 @@ def report(answer: Answer, path: str | Path) -> Path:
     """Write the page of an answered plan; returns its path."""
     path, says = Path(path), answer.plan.says
     material = ReportInput(
-        title=says.plan,
+        title=str(answer.record["study_title"]),
         question=says.question,
-        study_id=str(answer.record["study"]),
+        study_id=f"{answer.record['study']}, plan {says.plan}",
         cohort=answer.cohort,
         findings=answer.findings,
         record=answer.record,
