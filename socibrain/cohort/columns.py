@@ -61,7 +61,7 @@ def _of_scans(name: str) -> Column:
 def _measured(name: str, origin: str, measure: str) -> Column:
     passport = all_measures()[measure]
     return Column(
-        name, f"{passport.label} ({origin})", passport.says, passport.unit, passport.reading,
+        name, f"{passport.label} ({origin.replace('_', ' ')})", passport.says, passport.unit, passport.reading,
         passport.undefined, passport.source, measure, origin, passport.low, passport.high,
     )  # fmt: skip
 

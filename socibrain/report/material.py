@@ -32,8 +32,8 @@ class ReportInput:
         return tuple(dict.fromkeys(network.question for network in self.cohort.social))
 
     def side(self, column: Column) -> str:
-        """Where a column comes from: 'social', 'brain', or '' for attributes of the people."""
-        if not column.origin:
+        """Where a measure comes from: 'social', 'brain', or '' for what is no measure of ours."""
+        if not column.measure:
             return ""
         return "social" if column.origin in self.questions else "brain"
 
