@@ -11,9 +11,8 @@ import pytest
 import statsmodels.formula.api as smf
 from statsmodels.stats.anova import anova_lm
 
+import socibrain
 from socibrain.errors import Faults
-from socibrain.measures.brain.at_hand import BrainAtHand
-from socibrain.measures.catalogue import find_measure
 from socibrain.networks.brain import BrainNetwork, build_brain
 from socibrain.sources.matrices import read_matrix
 from socibrain.sources.matrix_files import find_matrices
@@ -42,15 +41,14 @@ def mice(mice_study: Path) -> tuple[pd.DataFrame, dict[str, BrainNetwork]]:
 
 
 @pytest.fixture(scope="module")
-def of_systems(mice: tuple[pd.DataFrame, dict[str, BrainNetwork]]) -> pd.DataFrame:
-    """The people table with the modularity of the 14 blocks, through the catalogue."""
-    table, networks = mice
-    function = find_measure("system_modularity").function
-    q = {
-        person: function(BrainAtHand(network, resolution=1.0, restarts=2, seed=1))
-        for person, network in networks.items()
-    }
-    return table.assign(q=pd.Series(q))
+def measured(mice_study: Path, tmp_path_factory: pytest.TempPathFactory) -> pd.DataFrame:
+    """persons.csv of a brain-only study: no site, no questionnaire, edge lists."""
+    out = tmp_path_factory.mktemp("mice") / "run"
+    cohort = socibrain.measure(mice_study, out=out)
+    assert cohort.flow["branch"].unique().tolist() == ["brain"]
+    assert cohort.flow["people"].tolist() == [32, 32, 32]
+    table = pd.read_csv(out / "persons.csv", index_col="person")
+    return table.rename(columns={"diffusion.system_modularity": "q"})
 
 
 def test_every_mouse_is_read(mice: tuple[pd.DataFrame, dict[str, BrainNetwork]]) -> None:
@@ -95,21 +93,21 @@ def exact_modularity(person: str) -> Fraction:
     )
 
 
-def test_modularity_of_the_blocks_of_one_mouse(of_systems: pd.DataFrame) -> None:
+def test_modularity_of_the_blocks_of_one_mouse(measured: pd.DataFrame) -> None:
     exact = exact_modularity("sub-54776")
     assert float(exact) == 0.084206678797511619
-    assert of_systems.loc["sub-54776", "q"] == pytest.approx(float(exact), rel=1e-13)
+    assert measured.loc["sub-54776", "q"] == pytest.approx(float(exact), rel=1e-13)
 
 
-def test_strain_means(of_systems: pd.DataFrame) -> None:
-    means = of_systems.groupby("strain")["q"].mean()
+def test_strain_means(measured: pd.DataFrame) -> None:
+    means = measured.groupby("strain")["q"].mean()
     expected = {"B6": 0.091469, "BTBR": 0.140081, "CAST": 0.101089, "DBA2": 0.087822}
     assert means.to_dict() == pytest.approx(expected, abs=1e-6)
     assert means.idxmax() == "BTBR"
 
 
-def test_strains_differ_given_sex(of_systems: pd.DataFrame) -> None:
-    fit = smf.ols("q ~ C(strain) + C(sex)", of_systems).fit()
+def test_strains_differ_given_sex(measured: pd.DataFrame) -> None:
+    fit = smf.ols("q ~ C(strain) + C(sex)", measured).fit()
     table = anova_lm(fit, typ=2)
     assert table.loc["C(strain)", "F"] == pytest.approx(143.305, abs=1e-3)
     assert (table.loc["C(strain)", "df"], table.loc["Residual", "df"]) == (3, 27)
