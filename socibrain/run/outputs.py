@@ -2,12 +2,15 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+
 import pandas as pd
 
 from socibrain.cohort.audit import Audit
 from socibrain.cohort.table import Cohort, Column
 from socibrain.link.finding import Findings
 from socibrain.measures.catalogue import all_measures
+from socibrain.run.crate import crate
 from socibrain.run.folder import arrays_bytes, csv_bytes, json_bytes, parquet_bytes
 
 Files = dict[str, bytes]
@@ -91,6 +94,12 @@ def of_findings(findings: Findings) -> Files:
         "findings.json": _said({n: FINDINGS_SAY[n] for n in map(str, findings.table.columns)}),
         "nulls.npz": arrays_bytes({each.hypothesis.id: each.null for each in findings.findings}),
     }
+
+
+def with_record(files: Files, record: Mapping[str, object]) -> Files:
+    """The files with the record of the run, and its provenance in the open RO-Crate form."""
+    files = files | {"run.json": json_bytes(record)}
+    return files | {"ro-crate-metadata.json": json_bytes(crate(record, files))}
 
 
 def _entry(column: Column) -> dict[str, object]:

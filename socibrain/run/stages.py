@@ -24,7 +24,7 @@ from socibrain.plan.planfile import Plan, check_columns, read_plan
 from socibrain.report.material import ReportInput
 from socibrain.report.page import render_report
 from socibrain.run import outputs
-from socibrain.run.folder import RunFolder, json_bytes
+from socibrain.run.folder import RunFolder
 from socibrain.run.record import VERSION, Clock, digests, packages
 from socibrain.sources.begin import begin as first_study_file
 from socibrain.sources.decisions import DECISIONS, write_suggestions
@@ -119,7 +119,7 @@ def measure(
     cohort = _measured(study, folder, workers, tell, clock)
     if folder:
         record = _record(study, None, clock)
-        folder.write(outputs.of_cohort(cohort) | {"run.json": json_bytes(record)})
+        folder.write(outputs.with_record(outputs.of_cohort(cohort), record))
     return cohort
 
 
@@ -142,11 +142,8 @@ def link(
         findings = answer_hypotheses(cohort, plan_read.says.hypotheses, options)
     record = _record(study, plan_read, clock)
     if folder:
-        folder.write(
-            outputs.of_cohort(cohort, findings)
-            | outputs.of_findings(findings)
-            | {"run.json": json_bytes(record)}
-        )
+        files = outputs.of_cohort(cohort, findings) | outputs.of_findings(findings)
+        folder.write(outputs.with_record(files, record))
     return Answer(plan_read, cohort, findings, record)
 
 
