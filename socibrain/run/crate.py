@@ -19,8 +19,13 @@ def crate(record: Mapping[str, object], outputs: Iterable[str]) -> dict[str, obj
     inputs = record["inputs"]
     digests = dict(inputs) if isinstance(inputs, Mapping) else {}
     used = [
-        {"@id": f"#sha256-{digest}", "@type": "CreativeWork", "name": name, "identifier": f"sha256:{digest}"}
-        for name, digest in digests.items()
+        {
+            "@id": f"#input-{number}",
+            "@type": "CreativeWork",
+            "name": name,
+            "identifier": f"sha256:{digest}",
+        }
+        for number, (name, digest) in enumerate(digests.items(), start=1)
     ]
     software = {
         "@id": "#socibrain",
