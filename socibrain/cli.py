@@ -100,11 +100,8 @@ def link(plan: Path, out: Path | None, workers: int | None, as_json: bool) -> No
     if as_json:
         _json({"findings": answer.table})
     else:
-        shown = ["id", "n", "n_sites", "estimate", "ci_low", "ci_high", "p_permutation", "p_family", "status"]
-        _print("Findings", answer.table[shown])
-        for finding in answer.findings.findings:
-            if finding.reason:
-                click.echo(f"{finding.hypothesis.id}: {finding.reason}")
+        for finding in answer.table.to_dict("records"):
+            _print_finding(finding, level=100 * (1 - answer.findings.options.alpha))
         click.echo(f"{out / 'findings.csv'}")
     if (answer.table["status"] == "failed").any():
         raise SystemExit(SOME_FAILED)
@@ -188,6 +185,22 @@ def _cell(value: object) -> str:
     if isinstance(value, float):
         return "n/a" if math.isnan(value) else f"{value:.4g}"
     return str(value)
+
+
+def _print_finding(finding: dict[Any, Any], *, level: float) -> None:
+    """One row of findings.csv in three lines."""
+    click.echo(f"{finding['id']}: {finding['predictor']} -> {finding['outcome']}")
+    if finding["status"] in ("refused", "failed"):
+        click.echo(f"  {finding['status']}: {finding['reason']}")
+        return
+    click.echo(
+        f"  standardised slope {finding['estimate']:.3f} "
+        f"({level:g} % interval {finding['ci_low']:.3f} to {finding['ci_high']:.3f})"
+    )
+    click.echo(
+        f"  p {finding['p_permutation']:.4g}, in its family {finding['p_family']:.4g}; "
+        f"{finding['n']} people in {finding['n_sites']} sites; {finding['role']}, {finding['status']}"
+    )
 
 
 def _print_problems(problems: pd.DataFrame) -> None:
