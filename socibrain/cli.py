@@ -16,18 +16,18 @@ from rich import box
 from rich.console import Console
 from rich.table import Table
 
-from socibrain.errors import Fault, Refusal
+from socibrain.errors import Fault, Refusal, told
 from socibrain.measures.catalogue import all_measures
 from socibrain.run import stages
 from socibrain.run.record import VERSION
 
-OUR_FAULT, INTERRUPTED, SOME_FAILED = 1, 130, 5
-aloud = Console(stderr=True, highlight=False)
-plain = Console(highlight=False, soft_wrap=True)
+OUR_FAULT, DATA_REFUSED, SOME_FAILED, INTERRUPTED = 1, 4, 5, 130
+aloud = Console(stderr=True, highlight=False, markup=False, emoji=False, soft_wrap=True)
+plain = Console(highlight=False, markup=False, emoji=False, soft_wrap=True)
 
 as_json = click.option("--json", "as_json", is_flag=True, help="Write results to stdout as JSON.")
 out_folder = click.option(
-    "--out", type=click.Path(path_type=Path, file_okay=False), help="Run folder [runs/<study or plan id>]."
+    "--out", type=click.Path(path_type=Path), help="Run folder [runs/<study or plan id>]."
 )
 worker_count = click.option(
     "--workers", type=click.IntRange(min=1), default=None, help="Worker processes [all cores]."
@@ -57,7 +57,8 @@ def begin(folder: Path) -> None:
 @as_json
 def audit(study: Path, out: Path | None, workers: int | None, as_json: bool) -> None:
     """Tell what was found, matched and left out, and why; works on half-collected data."""
-    found = stages.audit(study, out=out or stages.default_folder(study), workers=workers, tell=_tell)
+    out = out or stages.default_folder(study)
+    found = stages.audit(study, out=out, workers=workers, tell=_tell)
     if as_json:
         _json({"flow": found.flow, "sites": found.sites, "problems": found.problems, "ledger": found.ledger})
     else:
@@ -65,9 +66,14 @@ def audit(study: Path, out: Path | None, workers: int | None, as_json: bool) -> 
         _print("Sites", found.sites)
         if len(found.names):
             _print("What was written", found.names)
-        _print_problems(found.problems)
-    if found.problems["grave"].any():
-        raise SystemExit(4)
+        if len(found.problems):
+            kinds = found.problems.groupby(["kind", "grave"], sort=False).size().reset_index(name="times")
+            _print("Problems", kinds)
+    grave = [fault for fault in _faults(found.problems) if fault.grave]
+    _tell_lesser(found.problems, out)
+    if grave:
+        _tell(told(grave))
+        raise SystemExit(DATA_REFUSED)
 
 
 @entry.command()
@@ -79,6 +85,7 @@ def measure(study: Path, out: Path | None, workers: int | None, as_json: bool) -
     """Turn networks into tidy tables with data dictionaries."""
     out = out or stages.default_folder(study)
     cohort = stages.measure(study, out=out, workers=workers, tell=_tell)
+    _tell_lesser(cohort.problems, out)
     if as_json:
         _json({"persons": cohort.persons, "sites": cohort.sites})
     else:
@@ -97,12 +104,16 @@ def link(plan: Path, out: Path | None, workers: int | None, as_json: bool) -> No
     """Answer the hypotheses of PLAN."""
     out = out or stages.default_folder(plan)
     answer = stages.link(plan, out=out, workers=workers, tell=_tell)
+    _tell_lesser(answer.cohort.problems, out)
     if as_json:
         _json({"findings": answer.table})
     else:
         for finding in answer.table.to_dict("records"):
             _print_finding(finding, level=100 * (1 - answer.findings.options.alpha))
         click.echo(f"{out / 'findings.csv'}")
+    if answer.refusals:
+        _tell(told(answer.refusals))
+        raise SystemExit(DATA_REFUSED)
     if (answer.table["status"] == "failed").any():
         raise SystemExit(SOME_FAILED)
 
@@ -145,7 +156,7 @@ def _run(act: Callable[[], Any]) -> int:
     try:
         act()
     except Refusal as refusal:
-        _print_faults(refusal.faults)
+        _tell(str(refusal))
         return refusal.exit_code
     except click.exceptions.Abort:
         aloud.print("stopped; run the same command again to go on: finished work is kept")
@@ -203,15 +214,19 @@ def _print_finding(finding: dict[Any, Any], *, level: float) -> None:
     )
 
 
-def _print_problems(problems: pd.DataFrame) -> None:
-    if problems.empty:
+def _faults(problems: pd.DataFrame) -> list[Fault]:
+    return [Fault(*row) for row in problems.itertuples(index=False, name=None)]
+
+
+def _tell_lesser(problems: pd.DataFrame, out: Path) -> None:
+    """What was found wrong and did not stop the run: each kind in one line, by its first case."""
+    kinds: dict[str, list[Fault]] = {}
+    for fault in _faults(problems):
+        if not fault.grave:
+            kinds.setdefault(fault.kind, []).append(fault)
+    if not kinds:
         return
-    kinds = problems.groupby(["kind", "grave"], sort=False).size().reset_index(name="times")
-    _print("Problems", kinds)
-    grave = problems[problems["grave"].astype(bool)]
-    _print_faults([Fault(*row) for row in grave.itertuples(index=False, name=None)])
-
-
-def _print_faults(faults: Any) -> None:
-    for fault in faults:
-        aloud.print(str(fault), markup=False, soft_wrap=True)
+    _tell(f"problems that do not stop the run, and how to mend them, are in {out / 'problems.csv'}:")
+    for kind, (first, *others) in kinds.items():
+        more = f" (and {len(others)} more of this kind)" if others else ""
+        _tell(f"  {kind}: {first.where}  {first.found}{more}")

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
 from typing import NoReturn
 
@@ -34,7 +34,7 @@ class Fault:
         return f"{self.file}:{self.place}" if self.place else self.file
 
     def __str__(self) -> str:
-        return f"{self.where}  {self.found}\n  to mend: {self.mend}"
+        return told([self])
 
 
 class Refusal(Exception):
@@ -47,7 +47,28 @@ class Refusal(Exception):
         self.faults = faults
 
     def __str__(self) -> str:
-        return "\n".join(str(fault) for fault in self.faults)
+        return told(self.faults)
+
+
+PLACES_SHOWN = 3
+"""How many places of one statement are named before the rest is only counted."""
+
+
+def told(faults: Iterable[Fault]) -> str:
+    """All faults in words; what holds in several places is said once, with the first of them.
+
+    >>> print(told(Fault(f"{name}.tsv", "", "empty", "is empty", "save it again") for name in "abcd"))
+    a.tsv, b.tsv, c.tsv and 1 more  is empty
+      to mend: save it again
+    """
+    places: dict[tuple[str, str], list[str]] = {}
+    for fault in faults:
+        places.setdefault((fault.found, fault.mend), []).append(fault.where)
+    lines = []
+    for (found, mend), where in places.items():
+        more = f" and {len(where) - PLACES_SHOWN} more" if len(where) > PLACES_SHOWN else ""
+        lines.append(f"{', '.join(where[:PLACES_SHOWN])}{more}  {found}\n  to mend: {mend}")
+    return "\n".join(lines)
 
 
 class DocumentRefused(Refusal):
@@ -72,11 +93,11 @@ class Faults:
     """
 
     def __init__(self) -> None:
-        self._found: list[Fault] = []
+        self._found: dict[Fault, None] = {}
 
     def add(self, file: str, place: str, kind: str, found: str, mend: str, *, grave: bool = True) -> None:
-        """Put one fault on record."""
-        self._found.append(Fault(file, place, kind, found, mend, grave))
+        """Put one fault on record; what two readers of one file find alike is one fault."""
+        self._found[Fault(file, place, kind, found, mend, grave)] = None
 
     def __iter__(self) -> Iterator[Fault]:
         return iter(self._found)

@@ -138,7 +138,7 @@ def _insist(
     if _is_nothing(x, predictor[0]):
         raise _Unanswerable(
             f"predictor '{hypothesis.predictor}' is the same for everyone within each site; "
-            "ask about it at the site scale"
+            "the person scale asks about differences within sites"
         )
     if people - n_sites - len(parts) - 1 < 1:
         raise _Unanswerable(

@@ -54,6 +54,20 @@ class Answer:
         """One row per hypothesis."""
         return self.findings.table
 
+    @property
+    def refusals(self) -> tuple[Fault, ...]:
+        """Hypotheses that this study cannot answer: where the plan asks them, and why not."""
+        return tuple(
+            self.plan.document.fault(
+                ("hypotheses", number),
+                "unanswerable",
+                f"'{finding.hypothesis.id}' cannot be answered: {finding.reason}",
+                "take it out, or change it or the study so that it can be",
+            )
+            for number, finding in enumerate(self.findings.findings)
+            if finding.status == "refused"
+        )
+
 
 def silent(_: str) -> None:
     """Tell nobody."""
@@ -101,8 +115,11 @@ def audit(
     )
     if folder:
         folder.write(outputs.of_audit(found))
-        added = write_suggestions(study, gathered.open_names, Faults())
-        tell(f"{len(gathered.open_names)} names wait for a decision in {study.path(DECISIONS)} ({added} new)")
+        faults = Faults()
+        added = write_suggestions(study, gathered.open_names, faults)
+        faults.refuse_if_grave()
+        if names := len(gathered.open_names):
+            tell(f"{names} names wait for a decision in {study.path(DECISIONS)} ({added} new)")
     return found
 
 
@@ -248,6 +265,10 @@ def _teller(tell: Tell, verb: str) -> Callable[[int, int], None]:
 
 
 def _study_of(plan: Plan) -> Study:
+    if plan.study_path.resolve() == plan.document.path.resolve():
+        raise DocumentRefused(
+            plan.document.fault(("study",), "same-file", "is the plan itself", "name the study file")
+        )
     if not plan.study_path.is_file():
         raise DocumentRefused(
             plan.document.fault(("study",), "missing-file", "there is no such study file", "correct the path")

@@ -134,7 +134,7 @@ def test_refusals(change, hypothesis, reason: str) -> None:
 
 def test_constant_predictor_points_to_the_site_scale() -> None:
     persons = made_persons().assign(x=1.0)
-    assert reason_of(persons, ask()).endswith("ask about it at the site scale")
+    assert reason_of(persons, ask()).endswith("asks about differences within sites")
 
 
 def test_fewer_people_than_parameters() -> None:
