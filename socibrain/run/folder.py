@@ -6,6 +6,7 @@ import json
 import shutil
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
+from errno import EISDIR
 from io import BytesIO
 from pathlib import Path
 
@@ -53,6 +54,8 @@ class RunFolder:
         try:
             for name, content in contents.items():
                 (half / name).write_bytes(content)
+                if (self.path / name).is_dir():
+                    raise IsADirectoryError(EISDIR, f"'{name}' is a folder")
             for name in contents:
                 (half / name).replace(self.path / name)
         finally:

@@ -12,6 +12,8 @@ from pathlib import Path
 import numpy as np
 from numpy.typing import NDArray
 
+from socibrain.errors import DataRefused, Fault
+
 Arrays = dict[str, NDArray[np.generic]]
 
 
@@ -47,9 +49,19 @@ class Finished:
             return None
 
     def keep(self, key: str, arrays: Arrays) -> None:
-        """Keep the arrays of a finished task."""
-        self.folder.mkdir(parents=True, exist_ok=True)
+        """Keep the arrays of a finished task; raises `DataRefused` when they cannot be written."""
         half = self.folder / f"{key}.{os.getpid()}.half"
-        with half.open("wb") as file:
-            np.savez(file, allow_pickle=False, **arrays)
-        half.replace(self.folder / f"{key}.npz")
+        try:
+            self.folder.mkdir(parents=True, exist_ok=True)
+            with half.open("wb") as file:
+                np.savez(file, allow_pickle=False, **arrays)
+            half.replace(self.folder / f"{key}.npz")
+        except OSError as error:
+            if half.exists():
+                half.unlink()
+            raise DataRefused(
+                Fault(
+                    str(self.folder), "", "unwritable", f"finished work cannot be kept ({error.strerror})",
+                    "free space or choose another folder with --out",
+                )
+            ) from None  # fmt: skip
