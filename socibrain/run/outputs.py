@@ -29,7 +29,7 @@ FINDINGS_SAY = {
     "n_sites": "sites analysed",
     "estimate": "standardised within-site slope: within-site SDs of outcome per within-site SD of predictor",
     "raw_estimate": "within-site slope in the units of the columns",
-    "se": "standard error of estimate", "ci_low": "lower end of the interval of estimate, at 1 - alpha of the plan",
+    "se": "standard error of estimate", "ci_low": "lower end of the interval of estimate (1 - alpha)",
     "ci_high": "upper end of the same", "statistic": "Wald t of the within-site slope",
     "df": "Satterthwaite degrees of freedom",
     "contextual": "slope of the site mean, standardised by the same SDs",
