@@ -2,11 +2,15 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+from functools import cached_property
+
 import numpy as np
 from numpy.typing import NDArray
 from scipy import sparse
 
 Array = NDArray[np.float64]
+Codes = NDArray[np.int64]
 Ties = sparse.csr_array[np.float64]
 
 
@@ -29,10 +33,19 @@ def constraint(ties: Ties) -> Array:
     >>> constraint(sparse.csr_array(chain)).tolist()
     [1.0, 0.5, 1.0, nan]
     """
-    both_ways = _both_ways(ties)
-    shares, contact = _shares(both_ways), _support(both_ways)
-    invested = shares + (shares @ shares).multiply(contact)
-    return _unless_alone(both_ways, invested.power(2).sum(axis=1))
+    net = _contacts(ties)
+    outward, inward = net.shares
+    one, two, long = net.triangles
+    through = np.concatenate((one, two, long))
+    indirect_outward = np.concatenate(
+        (outward[long] * inward[two], inward[one] * outward[long], outward[one] * outward[two])
+    )
+    indirect_inward = np.concatenate(
+        (outward[two] * inward[long], inward[long] * outward[one], inward[two] * inward[one])
+    )
+    outward = outward + np.bincount(through, indirect_outward, minlength=len(outward))
+    inward = inward + np.bincount(through, indirect_inward, minlength=len(inward))
+    return net.sum_by_person(outward**2, inward**2)
 
 
 def effective_size(ties: Ties) -> Array:
@@ -52,46 +65,78 @@ def effective_size(ties: Ties) -> Array:
     >>> effective_size(sparse.csr_array(ties)).round(3).tolist()
     [2.333, 1.0, 1.0, 1.0]
     """
-    both_ways = _both_ways(ties)
-    shares, contact = _shares(both_ways), _support(both_ways)
-    relative = _scaled(both_ways, _strongest(both_ways))
-    redundancy: Array = (shares @ relative.T).multiply(contact).sum(axis=1)
-    return _unless_alone(both_ways, np.diff(both_ways.indptr) - redundancy)
+    net = _contacts(ties)
+    outward, inward = net.shares
+    strongest = np.zeros(net.people)
+    np.maximum.at(strongest, net.lower, net.weight)
+    np.maximum.at(strongest, net.upper, net.weight)
+    from_lower, from_upper = net.weight / strongest[net.lower], net.weight / strongest[net.upper]
+    one, two, long = net.triangles
+    redundancy = np.bincount(
+        np.concatenate((net.lower[one], net.upper[one], net.upper[two])),
+        np.concatenate(
+            (
+                outward[one] * from_upper[two] + outward[long] * from_lower[two],
+                inward[one] * from_upper[long] + outward[two] * from_lower[long],
+                inward[long] * from_upper[one] + inward[two] * from_lower[one],
+            )
+        ),
+        minlength=net.people,
+    )
+    each = np.ones(len(net.weight))
+    return net.sum_by_person(each, each) - redundancy
 
 
-def _both_ways(ties: Ties) -> Ties:
-    """a_ij + a_ji, without stored zeros, so that what is stored are the contacts."""
-    both_ways: Ties = (ties + ties.T).tocsr()
-    both_ways.eliminate_zeros()
-    return both_ways
+@dataclass(frozen=True)
+class _Contacts:
+    """Pairs with a tie in either direction, each once, sorted: ``lower`` < ``upper`` are row numbers.
+
+    ``weight`` is a_ij + a_ji.
+    """
+
+    people: int
+    lower: Codes
+    upper: Codes
+    weight: Array
+
+    @cached_property
+    def shares(self) -> tuple[Array, Array]:
+        """p of lower in upper, p of upper in lower, per pair."""
+        total = np.bincount(self.lower, self.weight, minlength=self.people)
+        total += np.bincount(self.upper, self.weight, minlength=self.people)
+        return self.weight / total[self.lower], self.weight / total[self.upper]
+
+    @cached_property
+    def triangles(self) -> tuple[Codes, Codes, Codes]:
+        """The pairs (i, q), (q, j), (i, j) of every triangle i < q < j, as places in ``weight``.
+
+        P² counts only where there is a contact, so only through triangles.
+        """
+        onward = np.bincount(self.lower, minlength=self.people)
+        first = np.cumsum(onward) - onward
+        branches = onward[self.upper]
+        one = np.repeat(np.arange(len(self.upper)), branches)
+        branch = np.arange(len(one)) - np.repeat(np.cumsum(branches) - branches, branches)
+        two = first[self.upper[one]] + branch
+        names = self.lower * self.people + self.upper
+        wanted = self.lower[one] * self.people + self.upper[two]
+        long = np.minimum(np.searchsorted(names, wanted), max(0, len(names) - 1))
+        closed = names[long] == wanted
+        return one[closed], two[closed], long[closed]
+
+    def sum_by_person(self, at_lower: Array, at_upper: Array) -> Array:
+        """Values of each pair added up at its ends; NaN for people without contacts."""
+        total = np.bincount(self.lower, at_lower, minlength=self.people)
+        total += np.bincount(self.upper, at_upper, minlength=self.people)
+        contacts = np.bincount(np.concatenate((self.lower, self.upper)), minlength=self.people)
+        return np.where(contacts > 0, total, np.nan)
 
 
-def _scaled(ties: Ties, divisor: Array) -> Ties:
-    """Each row divided by its own number."""
-    data = ties.data / np.repeat(divisor, np.diff(ties.indptr))
-    return sparse.csr_array((data, ties.indices, ties.indptr), shape=ties.shape)
-
-
-def _shares(both_ways: Ties) -> Ties:
-    """Share of a person's ties that goes to each contact; rows sum to 1."""
-    return _scaled(both_ways, np.asarray(both_ways.sum(axis=1), dtype=np.float64))
-
-
-def _support(both_ways: Ties) -> Ties:
-    """1 for each contact."""
-    ones = np.ones_like(both_ways.data)
-    return sparse.csr_array((ones, both_ways.indices, both_ways.indptr), shape=both_ways.shape)
-
-
-def _strongest(both_ways: Ties) -> Array:
-    """Strongest tie of each person; 0 without contacts."""
-    strongest = np.zeros(len(both_ways.indptr) - 1)
-    some = np.flatnonzero(np.diff(both_ways.indptr))
-    if len(some):
-        strongest[some] = np.maximum.reduceat(both_ways.data, both_ways.indptr[some])
-    return strongest
-
-
-def _unless_alone(both_ways: Ties, values: Array) -> Array:
-    """NaN where a person has no contact."""
-    return np.where(np.diff(both_ways.indptr) > 0, values, np.nan)
+def _contacts(ties: Ties) -> _Contacts:
+    """Ties in both directions added up; stored zeros are no contacts."""
+    both_ways = (ties + ties.T).tocsr()
+    both_ways.sort_indices()
+    people = both_ways.shape[0]
+    rows = np.repeat(np.arange(people), np.diff(both_ways.indptr))
+    kept = (rows < both_ways.indices) & (both_ways.data != 0)
+    return _Contacts(people, rows[kept], both_ways.indices[kept].astype(np.int64), both_ways.data[kept])

@@ -13,11 +13,17 @@ Mask = NDArray[np.bool_]
 Codes = NDArray[np.int64]
 
 TRIES_PER_TIE = 10
-"""Swaps tried per tie before a network counts as drawn: common practice."""
+"""Exchanges per tie before a network counts as drawn, where both places for the new ties are free:
+common practice.  Many places are taken in dense networks, so more are tried there."""
+MOST_TRIES_PER_TIE = 50
+"""A bound for networks so dense that hardly any exchange is possible."""
 _AHEAD = 64
 """Steps whose random numbers are drawn together."""
-_CELLS = 1 << 23
-"""Matrix cells held at once; blocks depend on the number of people alone, so draws do too."""
+_CELLS = 1 << 25
+"""Bytes for who is joined to whom in the walks side by side; blocks depend on the number of people
+alone, so draws do too."""
+_DENSE = 1 << 19
+"""Cells of dense networks handed out at once."""
 
 
 @dataclass(frozen=True)
@@ -43,7 +49,7 @@ class Rewired:
 
     def networks(self) -> Iterator[Mask]:
         """The draws as dense networks, (block, n, n) each, in order, in blocks that fit in memory."""
-        block = max(1, _CELLS // max(1, self.people**2))
+        block = max(1, _DENSE // max(1, self.people**2))
         for start in range(0, self.draws, block):
             mutual, one_way = self.mutual[start : start + block], self.one_way[start : start + block]
             dense = np.zeros((len(mutual), self.people, self.people), dtype=bool)
@@ -61,8 +67,9 @@ def rewire(ties: Mask, *, draws: int, rng: np.random.Generator) -> Rewired:
     stays as it is too.  Two ties of the same kind exchange partners (a–b, c–d become a–d, c–b)
     unless that would join people already joined; three one-way ties that form a cycle can
     turn round, which exchanges alone cannot do (Rao, Jana & Bandyopadhyay 1996, Sankhyā A 58).
-    Every step is as likely as its undoing, so each such network is as likely as any other
-    that can be reached.
+    Every step is as likely as its undoing, so each such network is as likely as any other that can be
+    reached: all of them without one-way ties; beside one-way ties in small dense networks some
+    cannot be.
     One walk leads from the observed network to a hidden one, and every draw is a walk from
     there: the observed network and the draws are then exchangeable however short the walks, and a p
     from ranking them is exact (Besag & Clifford 1989, Biometrika 76; their parallel method).
@@ -103,16 +110,18 @@ def rewire(ties: Mask, *, draws: int, rng: np.random.Generator) -> Rewired:
 def _walk(start: Codes, kinds: tuple[int, int], people: int, draws: int, rng: np.random.Generator) -> Codes:
     """``draws`` independent walks side by side, (draws, n_ties, 2), mutual ties first."""
     n_mutual, ties = kinds[0], sum(kinds)
-    tail = np.tile(start[:, 0], draws)
-    head = np.tile(start[:, 1], draws)
-    tie_between = np.full((people, people), -1, dtype=np.int32)
-    np.fill_diagonal(tie_between, ties)
-    tie_between[start[:, 0], start[:, 1]] = tie_between[start[:, 1], start[:, 0]] = np.arange(ties)
-    between = np.tile(tie_between.ravel(), draws)
+    tails, heads = np.tile(start[:, 0], (draws, 1)), np.tile(start[:, 1], (draws, 1))
+    tail, head = tails.reshape(-1), heads.reshape(-1)
+    one_joined = np.eye(people, dtype=bool)
+    one_joined[start[:, 0], start[:, 1]] = one_joined[start[:, 1], start[:, 0]] = True
+    joined = np.tile(one_joined.ravel(), draws)
     base = np.arange(draws) * ties
     cell = np.arange(draws) * people**2
 
-    steps = TRIES_PER_TIE * ties
+    free = 1.0 - 2.0 * ties / (people * (people - 1))
+    steps = ties * MOST_TRIES_PER_TIE
+    if MOST_TRIES_PER_TIE * free**2 > TRIES_PER_TIE:
+        steps = int(np.ceil(ties * TRIES_PER_TIE / free**2))
     for done in range(0, steps, _AHEAD):
         ahead = min(_AHEAD, steps - done)
         one = rng.integers(ties, size=(ahead, draws))
@@ -124,19 +133,18 @@ def _walk(start: Codes, kinds: tuple[int, int], people: int, draws: int, rng: np
             i, j = base + one[step], base + other[step]
             a, b, c, d = tail[i], head[i], tail[j], head[j]
             c, d = np.where(turned[step], d, c), np.where(turned[step], c, d)
-            free = (between[cell + a * people + d] < 0) & (between[cell + c * people + b] < 0)
-            k = np.flatnonzero(free)
-            if kinds[1]:
-                chain = np.flatnonzero((b == c) & one_way[step])
-                last = between[cell[chain] + d[chain] * people + a[chain]]
-                chain, last = chain[last >= n_mutual], base[chain[last >= n_mutual]] + last[last >= n_mutual]
-                cycle = tail[last] == d[chain]
-                for tie in (i[chain[cycle]], j[chain[cycle]], last[cycle]):
+            chain = np.flatnonzero((b == c) & one_way[step])
+            if len(chain):
+                closing = (tails[chain] == d[chain, None]) & (heads[chain] == a[chain, None])
+                cycle, last = np.nonzero(closing[:, n_mutual:])
+                cycle = chain[cycle]
+                for tie in (i[cycle], j[cycle], base[cycle] + n_mutual + last):
                     tail[tie], head[tie] = head[tie], tail[tie]
+            k = np.flatnonzero(~(joined[cell + a * people + d] | joined[cell + c * people + b]))
             i, j, a, b, c, d, at = i[k], j[k], a[k], b[k], c[k], d[k], cell[k]
-            between[at + a * people + b] = between[at + b * people + a] = -1
-            between[at + c * people + d] = between[at + d * people + c] = -1
-            between[at + a * people + d] = between[at + d * people + a] = one[step][k]
-            between[at + c * people + b] = between[at + b * people + c] = other[step][k]
+            joined[at + a * people + b] = joined[at + b * people + a] = False
+            joined[at + c * people + d] = joined[at + d * people + c] = False
+            joined[at + a * people + d] = joined[at + d * people + a] = True
+            joined[at + c * people + b] = joined[at + b * people + c] = True
             head[i], tail[j], head[j] = d, c, b
     return np.stack((tail, head), axis=1).reshape(draws, ties, 2)

@@ -23,7 +23,7 @@ class RichClub:
     possible ones; ``ratio`` is φ(k) over its mean in the draws (NaN where that is 0);
     ``deviation`` is (φ − mean) / SD over observed and draws together, NaN where nothing varies.
     ``p`` is for the whole curve, NaN when it varies at no k.
-    ``from_degree`` is the smallest degree that makes a member, NaN when there is no club.
+    ``from_degree`` is the smallest degree of a member, NaN when there is no club.
     """
 
     levels: Codes
@@ -85,11 +85,12 @@ def rich_club(ties: Mask, drawn: Codes, *, level: float, fewest: int) -> RichClu
     p_by_level = np.ones(len(levels))
     p_by_level[varied] = (1 + (largest[:, None] >= curves[0] - tolerance).sum(axis=0)) / (1 + len(drawn))
     p = float(p_by_level[varied].min())
-    lower = np.nan
+    from_degree = np.nan
     if p <= level:
         outside = np.flatnonzero(p_by_level[: int(np.nanargmax(deviation))] > level)
-        lower = float(levels[outside[-1] + 1] if len(outside) else levels[0]) + 1.0
-    return RichClub(levels, counts[0] / possible, ratio, deviation, p, lower)
+        lower = levels[outside[-1] + 1] if len(outside) else levels[0]
+        from_degree = float(degrees[degrees > lower].min())
+    return RichClub(levels, counts[0] / possible, ratio, deviation, p, from_degree)
 
 
 def _levels(degrees: Codes, fewest: int) -> tuple[Codes, Codes]:

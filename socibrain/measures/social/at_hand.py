@@ -22,8 +22,8 @@ Array = NDArray[np.float64]
 Mask = NDArray[np.bool_]
 Codes = NDArray[np.int64]
 
-DRAWS = 999
-"""Random networks behind every comparison with chance: smallest p 1/1000."""
+DRAWS = 499
+"""Random networks behind every comparison with chance: smallest p 1/500."""
 CLUB_LEVEL = 0.05
 """p at or below which a site has a rich club."""
 CLUB_FEWEST = 3

@@ -32,7 +32,7 @@ UNDEFINED = (
 def coordinator_against_chance(site: SiteAtHand) -> Array:
     """Excess of paths that lead between two people of one's own class over random networks.
 
-    Shape (n_people,).  (count − mean) / SD over 999 networks that keep everyone's mutual ties, ties
+    Shape (n_people,).  (count − mean) / SD over random networks that keep everyone's mutual ties, ties
     sent and ties received as many as after the tie rule, hence the dyad census too.
 
     A ring of four can be drawn in three ways; in one of them, as in the given one, person 0 stands
@@ -61,7 +61,7 @@ def coordinator_against_chance(site: SiteAtHand) -> Array:
 def itinerant_against_chance(site: SiteAtHand) -> Array:
     """Excess of paths that lead between two people of one other class over random networks.
 
-    Shape (n_people,).  (count − mean) / SD over 999 networks that keep everyone's mutual ties, ties
+    Shape (n_people,).  (count − mean) / SD over random networks that keep everyone's mutual ties, ties
     sent and ties received as many as after the tie rule, hence the dyad census too.
 
     A ring of four can be drawn in three ways; in one of them, as in the given one, person 0 stands
@@ -90,7 +90,7 @@ def itinerant_against_chance(site: SiteAtHand) -> Array:
 def gatekeeper_against_chance(site: SiteAtHand) -> Array:
     """Excess of paths that lead from another class into one's own over random networks.
 
-    Shape (n_people,).  (count − mean) / SD over 999 networks that keep everyone's mutual ties, ties
+    Shape (n_people,).  (count − mean) / SD over random networks that keep everyone's mutual ties, ties
     sent and ties received as many as after the tie rule, hence the dyad census too.
 
     A ring of four can be drawn in three ways; in two of them, as in the given one, person 0 stands
@@ -119,7 +119,7 @@ def gatekeeper_against_chance(site: SiteAtHand) -> Array:
 def representative_against_chance(site: SiteAtHand) -> Array:
     """Excess of paths that lead from one's own class to another over random networks.
 
-    Shape (n_people,).  (count − mean) / SD over 999 networks that keep everyone's mutual ties, ties
+    Shape (n_people,).  (count − mean) / SD over random networks that keep everyone's mutual ties, ties
     sent and ties received as many as after the tie rule, hence the dyad census too.
 
     A ring of four can be drawn in three ways; in two of them, as in the given one, person 0 stands
@@ -148,7 +148,7 @@ def representative_against_chance(site: SiteAtHand) -> Array:
 def liaison_against_chance(site: SiteAtHand) -> Array:
     """Excess of paths that lead between two other classes over random networks.
 
-    Shape (n_people,).  (count − mean) / SD over 999 networks that keep everyone's mutual ties, ties
+    Shape (n_people,).  (count − mean) / SD over random networks that keep everyone's mutual ties, ties
     sent and ties received as many as after the tie rule, hence the dyad census too.
 
     A ring of four can be drawn in three ways; in one of them, as in the given one, person 0 stands

@@ -33,7 +33,7 @@ def rich_club_member(site: SiteAtHand) -> Array:
 
     Shape (n_people,). Degree is the number of distinct contacts; under a directed rule a tie in either
     direction makes a contact. φ(k), the density of ties among people of degree > k, is compared with
-    999 networks in which everyone has as many contacts, for every k that leaves three people or more.
+    random networks in which everyone has as many contacts, for every k that leaves three people or more.
     If the largest deviation over all k is significant, members are the people above the lower end of
     the run of significant k around it.
 
@@ -125,7 +125,7 @@ def rich_club_ties_moved(site: SiteAtHand) -> float:
     source="our own account of the null's reach",
 )
 def rich_club_distinct_draws(site: SiteAtHand) -> float:
-    """How many of the 999 random networks behind the rich-club test differ from each other.
+    """How many of the random networks behind the rich-club test differ from each other.
 
     >>> from socibrain.measures.social.at_hand import bare_site
     >>> rich_club_distinct_draws(bare_site([[1], [2], []], rule="either"))

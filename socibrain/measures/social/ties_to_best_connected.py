@@ -32,7 +32,7 @@ def ties_to_best_connected(site: SiteAtHand) -> Array:
     """Standardised excess of contacts among the best-connected, after the tie rule.
 
     Shape (n_people,). The best-connected are the quarter of the site with most distinct contacts, and
-    whoever has as many as the last of them. (count − mean) / SD over 999 networks in which everyone has
+    whoever has as many as the last of them. (count − mean) / SD over random networks in which everyone has
     as many contacts. Defined also where there is no rich club.
 
     In a chain of three nothing can be drawn differently:
