@@ -109,42 +109,52 @@ def rewire(ties: Mask, *, draws: int, rng: np.random.Generator) -> Rewired:
 
 def _walk(start: Codes, kinds: tuple[int, int], people: int, draws: int, rng: np.random.Generator) -> Codes:
     """``draws`` independent walks side by side, (draws, n_ties, 2), mutual ties first."""
-    n_mutual, ties = kinds[0], sum(kinds)
-    tails, heads = np.tile(start[:, 0], (draws, 1)), np.tile(start[:, 1], (draws, 1))
-    tail, head = tails.reshape(-1), heads.reshape(-1)
+    n_mutual, n_one_way = kinds
+    ties = n_mutual + n_one_way
+    drawn = np.tile(start, (draws, 1, 1))
+    end = drawn.reshape(-1)
     one_joined = np.eye(people, dtype=bool)
     one_joined[start[:, 0], start[:, 1]] = one_joined[start[:, 1], start[:, 0]] = True
-    joined = np.tile(one_joined.ravel(), draws)
-    base = np.arange(draws) * ties
-    cell = np.arange(draws) * people**2
+    joined = np.tile(one_joined.reshape(-1), draws)
+    first_end = np.arange(draws) * ties * 2
+    first_cell = np.arange(draws) * people**2
 
     free = 1.0 - 2.0 * ties / (people * (people - 1))
     steps = ties * MOST_TRIES_PER_TIE
     if MOST_TRIES_PER_TIE * free**2 > TRIES_PER_TIE:
         steps = int(np.ceil(ties * TRIES_PER_TIE / free**2))
     for done in range(0, steps, _AHEAD):
-        ahead = min(_AHEAD, steps - done)
-        one = rng.integers(ties, size=(ahead, draws))
+        shape = (min(_AHEAD, steps - done), draws)
+        one = rng.integers(ties, size=shape)
         one_way = one >= n_mutual
-        span = np.where(one_way, kinds[1], n_mutual)
-        other = (rng.random((ahead, draws)) * span).astype(np.int64) + np.where(one_way, n_mutual, 0)
-        turned = (rng.random((ahead, draws)) < 0.5) & ~one_way
-        for step in range(ahead):
-            i, j = base + one[step], base + other[step]
-            a, b, c, d = tail[i], head[i], tail[j], head[j]
-            c, d = np.where(turned[step], d, c), np.where(turned[step], c, d)
-            chain = np.flatnonzero((b == c) & one_way[step])
-            if len(chain):
-                closing = (tails[chain] == d[chain, None]) & (heads[chain] == a[chain, None])
-                cycle, last = np.nonzero(closing[:, n_mutual:])
-                cycle = chain[cycle]
-                for tie in (i[cycle], j[cycle], base[cycle] + n_mutual + last):
-                    tail[tie], head[tie] = head[tie], tail[tie]
-            k = np.flatnonzero(~(joined[cell + a * people + d] | joined[cell + c * people + b]))
-            i, j, a, b, c, d, at = i[k], j[k], a[k], b[k], c[k], d[k], cell[k]
-            joined[at + a * people + b] = joined[at + b * people + a] = False
-            joined[at + c * people + d] = joined[at + d * people + c] = False
-            joined[at + a * people + d] = joined[at + d * people + a] = True
-            joined[at + c * people + b] = joined[at + b * people + c] = True
-            head[i], tail[j], head[j] = d, c, b
-    return np.stack((tail, head), axis=1).reshape(draws, ties, 2)
+        other = (rng.random(shape) * np.where(one_way, n_one_way, n_mutual)).astype(np.int64)
+        other += np.where(one_way, n_mutual, 0)
+        turned = (rng.random(shape) < 0.5) & ~one_way
+        at_b, at_d = first_end + 2 * one + 1, first_end + 2 * other + ~turned
+        for to_b, to_d, directed in zip(at_b, at_d, one_way, strict=True):
+            a, b, c, d = end[to_b - 1], end[to_b], end[to_d ^ 1], end[to_d]
+            joined_ad = joined[first_cell + a * people + d]
+            if n_one_way:
+                _turn_cycles(drawn, np.flatnonzero((b == c) & joined_ad & directed), to_b, to_d, n_mutual)
+            k = np.flatnonzero(~(joined_ad | joined[first_cell + c * people + b]))
+            a, b, c, d, cell = a[k], b[k], c[k], d[k], first_cell[k]
+            end[to_b[k]], end[to_d[k]] = d, b
+            from_a, from_b = cell + a * people, cell + b * people
+            from_c, from_d = cell + c * people, cell + d * people
+            joined[from_a + b] = joined[from_b + a] = joined[from_c + d] = joined[from_d + c] = False
+            joined[from_a + d] = joined[from_d + a] = joined[from_c + b] = joined[from_b + c] = True
+    return drawn
+
+
+def _turn_cycles(drawn: Codes, chains: Codes, to_b: Codes, to_d: Codes, n_mutual: int) -> None:
+    """In the draws ``chains``, where a → b → d and a tie joins d and a: turn the cycle round if d → a."""
+    if not len(chains):
+        return
+    end = drawn.reshape(-1)
+    a, d = end[to_b[chains] - 1], end[to_d[chains]]
+    one_way = drawn[chains, n_mutual:]
+    cycle, last = np.nonzero((one_way[..., 0] == d[:, None]) & (one_way[..., 1] == a[:, None]))
+    cycle = chains[cycle]
+    closing = (cycle * drawn.shape[1] + n_mutual + last) * 2 + 1
+    for head in (to_b[cycle], to_d[cycle], closing):
+        end[head], end[head - 1] = end[head - 1], end[head]
