@@ -58,7 +58,7 @@ def told(faults: Iterable[Fault]) -> str:
     """All faults in words; what holds in several places is said once, with the first of them.
 
     >>> print(told(Fault(f"{name}.tsv", "", "empty", "is empty", "save it again") for name in "abcd"))
-    a.tsv, b.tsv, c.tsv and 1 more  is empty
+    a.tsv; b.tsv; c.tsv and 1 more  is empty
       to mend: save it again
     """
     places: dict[tuple[str, str], list[str]] = {}
@@ -67,7 +67,7 @@ def told(faults: Iterable[Fault]) -> str:
     lines = []
     for (found, mend), where in places.items():
         more = f" and {len(where) - PLACES_SHOWN} more" if len(where) > PLACES_SHOWN else ""
-        lines.append(f"{', '.join(where[:PLACES_SHOWN])}{more}  {found}\n  to mend: {mend}")
+        lines.append(f"{'; '.join(where[:PLACES_SHOWN])}{more}  {found}\n  to mend: {mend}")
     return "\n".join(lines)
 
 

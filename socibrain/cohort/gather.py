@@ -19,6 +19,7 @@ from socibrain.sources.records import MatrixFile, PeopleTable, RegionTable, Rost
 from socibrain.sources.regions import read_regions
 from socibrain.sources.roster import read_roster
 from socibrain.sources.study import Study
+from socibrain.sources.tables import listed, read_text
 
 
 @dataclass(frozen=True)
@@ -56,22 +57,28 @@ class Gathered:
 def gather(study: Study, faults: Faults) -> Gathered:
     """Read every file that the study names, except the matrices themselves.
 
-    Raises `DataRefused` when the people table cannot be used: nobody would be known by then.
-    Whatever else is wrong is in ``faults``.
+    Raises `DataRefused` when the people table cannot be used: nobody would be known by then, and
+    of the other tables it is only told whether they can be read.  Whatever else is wrong is in
+    ``faults``.
     """
     people = read_people(study, faults)
     if people is None:
+        for file in named_tables(study):
+            read_text(study.path(file), file, faults)
         faults.refuse()
     left_out = read_exclusions(study, people, faults)
     roster: tuple[RosterEntry, ...] = ()
     social = SocialReading((), pd.DataFrame(), ())
     if study.says.questionnaire:
         roster = read_roster(study, people, faults)
+        _note_absent(study, people, roster, faults)
         social = _read_social(study, people, roster, left_out, faults)
-    found = [
-        matrix for source in study.says.brain for matrix in find_matrices(study, source, people.ids, faults)
-    ]
     asked, came = invited(study, people), scanned(study, people)
+    found = [
+        matrix
+        for source in study.says.brain
+        for matrix in find_matrices(study, source, people.ids, faults, expected=came is None or bool(came))
+    ]
     return Gathered(
         study=study,
         people=people,
@@ -90,17 +97,33 @@ def gather(study: Study, faults: Faults) -> Gathered:
 
 def input_files(gathered: Gathered) -> list[str]:
     """Every file that was read, as the study writes it, without repeats."""
-    says = gathered.study.says
-    people = says.people.file
-    files = [people, people.rsplit(".", 1)[0] + ".json"]
-    files += [rule.file for rule in says.exclusions if rule.file]
+    study = gathered.study
+    sidecar = study.says.people.file.rsplit(".", 1)[0] + ".json"
+    files = [*named_tables(study), sidecar, DECISIONS]
+    return list(dict.fromkeys([*files, *(matrix.file for matrix in gathered.matrices)]))
+
+
+def named_tables(study: Study) -> list[str]:
+    """Every table that the study names, without repeats."""
+    says, asked = study.says, study.says.questionnaire
+    files = [says.people.file, *(rule.file for rule in says.exclusions if rule.file)]
     files += [part.file for part in (says.roster, says.regions) if part]
-    if asked := says.questionnaire:
+    if asked:
         files += [question.file for question in asked.questions.values()]
         files += [asked.answered.file] if asked.answered else []
         files += [asked.aliases] if asked.aliases else []
-        files.append(DECISIONS)
-    return list(dict.fromkeys([*files, *(matrix.file for matrix in gathered.matrices)]))
+    return list(dict.fromkeys(files))
+
+
+def _note_absent(study: Study, people: PeopleTable, roster: tuple[RosterEntry, ...], faults: Faults) -> None:
+    """Say who is in the people table only: they may be scanned, and have no social position."""
+    there = {entry.person for entry in roster}
+    absent = [person for person in people.ids if person not in there]
+    declared = study.says.roster
+    if declared and roster and absent:
+        faults.add(declared.file, f"column {declared.person}", "not-on-roster",
+                   f"no row for {listed(absent)} of the people table: no social position",
+                   "add a row for everyone who could be named", grave=False)  # fmt: skip
 
 
 def _read_social(
@@ -113,14 +136,13 @@ def _read_social(
     asked = study.says.questionnaire
     questions = asked.questions if asked else {}
     read = [read_answers(study, question, faults) for question in questions]
-    known = {*people.ids, *(entry.person for entry in roster)}
     role = people.table["role"]
     return build_social_networks(
         study,
         roster,
         [answers for answers in read if answers is not None],
         faults,
-        answered=read_answered(study, faults, known=known),
+        answered=read_answered(study, faults, known=people.ids),
         roles={person: role.get(person) for person in people.ids},
         names=read_names(study, roster, faults),
         leave_out=frozenset(each.person for each in left_out if each.leaves_out_of != "brain"),

@@ -23,7 +23,7 @@ def nearest(word: str, valid: Iterable[str]) -> str:
     >>> nearest("outcom", ["outcome", "predictor"])
     "did you mean 'outcome'?"
     """
-    choices = sorted(valid)
+    choices = sorted(set(valid))
     close = _closest(word, choices)
     return f"did you mean '{close}'?" if close else "valid here: " + (", ".join(choices) or "nothing")
 
@@ -44,10 +44,13 @@ def model_faults(tree: Tree, model: type[BaseModel], error: ValidationError) -> 
         for keys, errors in said.items()
         if errors[0]["type"] == "extra_forbidden"
     }
+    # A list with a faulty entry is called too short as well: only sound entries are counted.
+    around = {keys[:length] for keys in said for length in range(len(keys))}
     told = {
         keys: errors
         for keys, errors in said.items()
         if not (errors[0]["type"] == "missing" and keys in meant)
+        and not (errors[0]["type"] == "too_short" and keys in around)
     }
     in_order = sorted(told, key=tree.position)
     return [tree.fault(keys, *_wording(model, keys, told[keys])) for keys in in_order]

@@ -112,10 +112,12 @@ def _with_dead(
 
 
 def _in_order(record: MatrixRecord, table: RegionTable, faults: Faults) -> bool:
-    """Whether a file that names the table's regions names them in the table's order."""
-    if record.names == table.names or set(record.names) != set(table.names):
+    """Whether every region of the table that the file names stands where the table has it."""
+    known = set(table.names)
+    pairs = enumerate(zip(record.names, table.names, strict=False))
+    at = next((i for i, (own, other) in pairs if own != other and own in known), None)
+    if at is None:
         return True
-    at = next(i for i, (own, other) in enumerate(zip(record.names, table.names, strict=True)) if own != other)
     faults.add(record.origin.file, f"row {at + 1}", "region-order",
                f"region '{record.names[at]}' stands where the region table has '{table.names[at]}'",
                "bring both into the same order")  # fmt: skip

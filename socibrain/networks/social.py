@@ -14,8 +14,8 @@ from socibrain.networks.nominations import FATES, Read, note_nominations, open_n
 from socibrain.sources.decisions import OpenName
 from socibrain.sources.names import NameBook
 from socibrain.sources.records import Answers, RosterEntry
-from socibrain.sources.roster import mend_unknown
 from socibrain.sources.study import Study, TieRule
+from socibrain.sources.tables import mend_unknown
 
 Array = NDArray[np.float64]
 Mask = NDArray[np.bool_]
@@ -158,6 +158,12 @@ def _note_silence(
 ) -> None:
     """People whose answers to this question alone are missing, and how that is taken."""
     wrote = {one.nomination.chooser for one in read}
+    silent = [person for person in kept if answered is not None and person in answered]
+    if silent and not answers.first_line:
+        faults.add(answers.file, "", "empty",
+                   f"has a header and no rows, and {len(silent)} people answered by the status table",
+                   "export the answers again, or correct the status table")  # fmt: skip
+        return
     for person in kept:
         line = answers.first_line.get(person)
         place = "" if line is None else f"line {line}"

@@ -16,8 +16,8 @@ def read_answered(
     """Ids of those who answered.
 
     None when the study declares no status table, or when it cannot be used (reasons in
-    ``faults``).  ``known`` holds the ids of people table and roster: any other id is put on
-    record and left out.  Who has no status counts as not answered, and is put on record.
+    ``faults``).  ``known`` holds the ids of the people table: any other id is a grave fault.  Who
+    has no status counts as not answered, and is put on record.
     """
     says = study.says.questionnaire.answered if study.says.questionnaire else None
     if says is None:

@@ -11,10 +11,9 @@ from dataclasses import dataclass
 from socibrain.documents import nearest
 from socibrain.errors import Faults
 from socibrain.sources.records import RosterEntry
-from socibrain.sources.roster import mend_unknown
 from socibrain.sources.spelling import name_key
 from socibrain.sources.study import Study
-from socibrain.sources.tables import TextTable, is_missing, read_table, read_text
+from socibrain.sources.tables import TextTable, is_missing, mend_unknown, read_table, read_text
 
 DECISIONS = "private/decisions.csv"
 """Where decisions lie, from the folder of the study file; reports never read it."""
@@ -94,12 +93,14 @@ def write_suggestions(study: Study, open_names: Iterable[OpenName], faults: Faul
     if added:
         before = (read_text(path, DECISIONS, faults) or "") if table else ""
         text = _appended(before, table.columns if table else COLUMNS, list(added.values()))
+        draft = path.with_suffix(".draft")
         try:
             path.parent.mkdir(exist_ok=True)
-            draft = path.with_suffix(".draft")
             draft.write_text(text, encoding="utf-8", newline="")
             os.replace(draft, path)
         except OSError as error:
+            if draft.is_file():
+                draft.unlink()
             faults.add(DECISIONS, "", "unwritable", f"cannot be written ({error.strerror})",
                        "make the folder of the study file writable")  # fmt: skip
             return 0

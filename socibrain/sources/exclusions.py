@@ -11,10 +11,7 @@ from socibrain.sources.keyed import Key, keyed_rows
 from socibrain.sources.people import scanned
 from socibrain.sources.records import PeopleTable
 from socibrain.sources.study import Exclusion, Study
-from socibrain.sources.tables import TextTable, as_number, is_missing, read_table
-
-SHOWN_IDS = 10
-"""How many ids a message lists before it only counts the rest."""
+from socibrain.sources.tables import TextTable, as_number, is_missing, listed, read_table
 
 
 @dataclass(frozen=True)
@@ -111,10 +108,8 @@ def _apply(
             left_out.append(LeftOut(row.person, row.visit, rule.leaves_out_of, rule.because))
     absent = sorted(concerned - {row.person for row in rows})
     if absent:
-        more = f" and {len(absent) - SHOWN_IDS} more" if len(absent) > SHOWN_IDS else ""
-        who = ", ".join(absent[:SHOWN_IDS]) + more
         faults.add(table.file, f"column {key.person}", "no-value",
-                   f"no row for {who}: the rule '{rule.because}' is not applied to them",
+                   f"no row for {listed(absent)}: the rule '{rule.because}' is not applied to them",
                    "add a row for each of them", grave=False)  # fmt: skip
     return left_out
 

@@ -7,7 +7,9 @@ from dataclasses import dataclass
 
 from socibrain.documents import nearest
 from socibrain.errors import Faults
-from socibrain.sources.tables import TextTable, is_missing, lookalike
+from socibrain.sources.tables import TextTable, is_missing, lookalike, mend_unknown
+
+MEND_STRANGER = "add the person to the people table, or take the row out"
 
 
 @dataclass(frozen=True)
@@ -33,9 +35,9 @@ class Key:
 def keyed_rows(table: TextTable, key: Key, faults: Faults) -> list[KeyedRow]:
     """Rows of the study's people and visits, in file order.
 
-    Rows without an id, or for a person (and visit) seen before, are grave faults.  So are ids
-    that differ from a known one by case or leading zeros only.  Other unknown ids are put on
-    record, and their rows are left out.
+    Rows without an id, or for a person (and visit) seen before, are grave faults.  So are people
+    whom the study does not know, and visits that differ from a known one by case or leading zeros
+    only.  Other unknown visits are put on record, and their rows are left out.
     """
     rows: list[KeyedRow] = []
     first: dict[tuple[str, str], int] = {}
@@ -48,8 +50,8 @@ def keyed_rows(table: TextTable, key: Key, faults: Faults) -> list[KeyedRow]:
             at_visit = f" at visit '{visit}'" if visit else ""
             faults.add(table.file, f"line {line}", "duplicate-id",
                        f"'{person}'{at_visit} stands on line {first[person, visit]} already",
-                       "keep one row" if visit else "keep one row, or declare the column with the visit",
-                       )  # fmt: skip
+                       "keep one row per person" if visit or not key.visits
+                       else "keep one row per person, or declare the column with the visit")  # fmt: skip
         else:
             first[person, visit] = line
             rows.append(KeyedRow(person, visit, line, cells))
@@ -67,21 +69,20 @@ def note_unused(table: TextTable, column: str, values: tuple[str, ...], meaning:
 
 def _belongs(row: KeyedRow, table: TextTable, key: Key, faults: Faults) -> bool:
     """Whether the study knows the row's person and visit; says so when it does not."""
-    labels: list[tuple[str, str, str, Collection[str]]] = []
-    if key.people is not None:
-        labels.append(("person", key.person, row.person, key.people))
-    if key.visit:
-        labels.append(("visit", key.visit, row.visit, key.visits))
-    unknown = [label for label in labels if label[2] not in label[3]]
-    for what, column, label, known in unknown:
-        place = f"line {row.line}, column {column}"
-        other = lookalike(label, known)
-        if other is not None:
-            faults.add(table.file, place, f"alike-{what}",
-                       f"'{label}' is no {what} of this study, '{other}' is",
-                       "write it the same way in all files")  # fmt: skip
-        else:
-            faults.add(table.file, place, f"unknown-{what}",
-                       f"'{label}' is no {what} of this study; the row is not used",
-                       f"add the {what} to the study, or take the row out", grave=False)  # fmt: skip
-    return not unknown
+    stranger = key.people is not None and row.person not in key.people
+    if stranger:
+        mend = mend_unknown(row.person, key.people or (), MEND_STRANGER)
+        faults.add(table.file, f"line {row.line}, column {key.person}", "unknown-person",
+                   f"'{row.person}' is not in the people table", mend)  # fmt: skip
+    if not key.visit or row.visit in key.visits:
+        return not stranger
+    place = f"line {row.line}, column {key.visit}"
+    other = lookalike(row.visit, key.visits)
+    if other is not None:
+        faults.add(table.file, place, "alike-visit", f"'{row.visit}' is no visit of this study, '{other}' is",
+                   "write it the same way in all files")  # fmt: skip
+    else:
+        faults.add(table.file, place, "unknown-visit",
+                   f"'{row.visit}' is no visit of this study; the row is not used",
+                   "add the visit to the study, or take the row out", grave=False)  # fmt: skip
+    return False

@@ -13,6 +13,7 @@ from socibrain.sources.matrix_edges import read_edges
 from socibrain.sources.matrix_text import NumberTable, read_numbers
 from socibrain.sources.records import MatrixFile, MatrixRecord
 from socibrain.sources.study import Study
+from socibrain.sources.tables import LARGEST
 
 Array = NDArray[np.float64]
 
@@ -57,7 +58,8 @@ def _content(path: Path, shown: str, faults: Faults) -> bytes | None:
         faults.add(shown, "", "missing-file", "there is no such file", "put it there, or correct the path")
         return None
     except OSError as error:
-        faults.add(shown, "", "unreadable", f"cannot be read ({error.strerror})", "check its permissions")
+        faults.add(shown, "", "unreadable", f"cannot be read ({error.strerror})",
+                   "correct the path, or the file's permissions")  # fmt: skip
         return None
     if not content:
         faults.add(shown, "", "empty", "is empty", "save the matrix again")
@@ -92,7 +94,7 @@ def _fits(weights: Array, n_regions: int | None, shown: str, faults: Faults) -> 
         faults.add(shown, "", "wrong-size", f"is {size} where the region table has {n_regions} regions",
                    "give both the same regions in the same order")  # fmt: skip
         return False
-    finite = np.isfinite(weights)
+    finite = np.abs(weights) <= LARGEST
     if finite.all():
         return True
     np.fill_diagonal(finite, True)
@@ -103,7 +105,11 @@ def _fits(weights: Array, n_regions: int | None, shown: str, faults: Faults) -> 
     if len(stray) == 0:
         return True
     row, column = stray[0]
-    more = f" (and {len(stray) - 1} more cells are missing or infinite)" if len(stray) > 1 else ""
+    more = (
+        f" (and {len(stray) - 1} more cells are missing, infinite or beyond {LARGEST:g})"
+        if len(stray) > 1
+        else ""
+    )
     faults.add(shown, f"row {row + 1}, column {column + 1}", "not-finite",
                f"the weight is {weights[row, column]}{more}",
                "compute the matrix again; only a whole region may be missing")  # fmt: skip

@@ -18,15 +18,15 @@ ANYTHING = r"[^/]+"
 
 
 def find_matrices(
-    study: Study, source_name: str, ids: Sequence[str], faults: Faults
+    study: Study, source_name: str, ids: Sequence[str], faults: Faults, *, expected: bool = True
 ) -> tuple[MatrixFile, ...]:
     """The files of one brain input, in the order of ``ids`` and then of the declared visits.
 
     The declared pattern is filled with every known id (exactly as written) and every declared
     visit.  A person without a file is not a fault.  Files that fit the pattern for nobody known,
     or for no declared visit, are put on record with the id that was probably meant; finding no
-    file at all is grave.  Where the pattern ends in ``_relmat.tsv`` the entities of a file's name
-    may stand in any order, and ``seg-`` is the same as ``atlas-``.
+    file at all is grave when some are ``expected``.  Where the pattern ends in ``_relmat.tsv`` the
+    entities of a file's name may stand in any order, and ``seg-`` is the same as ``atlas-``.
     """
     declared = study.says.brain[source_name].files
     pattern = _one_spelling(declared) if declared.endswith(RELATION) else declared
@@ -42,7 +42,8 @@ def find_matrices(
     if not found:
         wanted = _filled(declared, ids[0] if ids else "ID", visits[0])
         faults.add(declared, "", "no-matrices", f"no file of brain input '{source_name}' was found",
-                   f"put them where the pattern says, for example {wanted}, or correct `files:`")  # fmt: skip
+                   f"put them where the pattern says, for example {wanted}, or correct `files:`",
+                   grave=expected)  # fmt: skip
     return tuple(found)
 
 

@@ -13,10 +13,9 @@ from socibrain.documents import nearest
 from socibrain.errors import Faults
 from socibrain.sources.decisions import read_decisions
 from socibrain.sources.records import RosterEntry
-from socibrain.sources.roster import mend_unknown
 from socibrain.sources.spelling import name_key, name_words
 from socibrain.sources.study import Study
-from socibrain.sources.tables import is_missing, loose_form, read_table
+from socibrain.sources.tables import is_missing, loose_form, mend_unknown, read_table
 
 Kind = Literal["resolved", "outside site", "off roster", "ambiguous", "unresolved"]
 

@@ -14,7 +14,15 @@ from socibrain.errors import Faults
 from socibrain.sources.keyed import note_unused
 from socibrain.sources.records import Array, PeopleTable
 from socibrain.sources.study import Chosen, Study
-from socibrain.sources.tables import TextTable, as_number, is_missing, loose_form, read_table, read_text
+from socibrain.sources.tables import (
+    LARGEST,
+    TextTable,
+    as_number,
+    is_missing,
+    loose_form,
+    read_table,
+    read_text,
+)
 
 ONE_SITE = "all"
 """Site of everyone in studies that declare none."""
@@ -44,7 +52,7 @@ def read_people(study: Study, faults: Faults) -> PeopleTable | None:
     sound = [
         _ids_are_sound(table, says.id, faults),
         _names_are_free(table, study, faults),
-        _sites_are_there(table, says.site, faults),
+        _sites_are_sound(table, says.site, faults),
     ]
     _note_oddities(table, study, sidecar, labels, faults)
     words = {says.id, says.site, says.role}
@@ -158,6 +166,14 @@ def _names_are_free(table: TextTable, study: Study, faults: Faults) -> bool:
     says = study.says.people
     own = {"site": says.site, "role": says.role, "person": says.id, "visit": None}
     sound = True
+    origins = {*study.says.brain, *(asked.questions if (asked := study.says.questionnaire) else ())}
+    for name in table.columns:
+        origin, dot, _ = name.partition(".")
+        if dot and origin in origins:
+            sound = False
+            faults.add(table.file, "line 1", "taken-name",
+                       f"column '{name}' is called like a measure of '{origin}'",
+                       "rename the column")  # fmt: skip
     for name in TAKEN:
         if name in table.columns and own[name] != name and name != says.id:
             sound = False
@@ -167,13 +183,22 @@ def _names_are_free(table: TextTable, study: Study, faults: Faults) -> bool:
     return sound
 
 
-def _sites_are_there(table: TextTable, column: str | None, faults: Faults) -> bool:
+def _sites_are_sound(table: TextTable, column: str | None, faults: Faults) -> bool:
+    """Everybody has a site; no two sites look the same."""
     sound = True
+    first: dict[str, tuple[str, int]] = {}
     for line, cell in zip(table.lines, table.column(column) if column else (), strict=False):
+        place = f"line {line}, column {column}"
+        other, where = first.setdefault(loose_form(cell), (cell, line))
         if is_missing(cell):
             sound = False
-            faults.add(table.file, f"line {line}, column {column}", "missing-site", "there is no site",
-                       "write the person's site")  # fmt: skip
+            faults.add(table.file, place, "missing-site", "there is no site", "write the person's site")
+        elif other != cell:
+            sound = False
+            faults.add(table.file, place, "alike-sites",
+                       f"site '{cell}' is '{other}' on line {where} but for case or leading zeros",
+                       "write one site one way; if they are different sites, give them different names",
+                       )  # fmt: skip
     return sound
 
 
@@ -220,7 +245,8 @@ def _numbers(table: TextTable, name: str, declared: bool, faults: Faults) -> Arr
             sound = False
             faults.add(table.file, f"line {line}, column {name}", "not-a-number",
                        f"'{cell}' is not a number, and {why}",
-                       "write it in digits with a decimal point, or n/a where there is no value")  # fmt: skip
+                       f"write it in digits with a decimal point (up to {LARGEST:g}), "
+                       "or n/a where there is no value")  # fmt: skip
     return values if sound else None
 
 

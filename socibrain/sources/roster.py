@@ -2,14 +2,15 @@
 
 from __future__ import annotations
 
-from collections.abc import Collection, Mapping
+from collections.abc import Mapping
 
 from socibrain.documents import nearest
 from socibrain.errors import Faults
+from socibrain.sources.keyed import MEND_STRANGER
 from socibrain.sources.records import PeopleTable, RosterEntry
 from socibrain.sources.spelling import name_key
 from socibrain.sources.study import Roster, Study
-from socibrain.sources.tables import is_missing, lookalike, read_table
+from socibrain.sources.tables import is_missing, lookalike, mend_unknown, read_table
 
 
 def read_roster(study: Study, people: PeopleTable, faults: Faults) -> tuple[RosterEntry, ...]:
@@ -27,6 +28,8 @@ def read_roster(study: Study, people: PeopleTable, faults: Faults) -> tuple[Rost
         return tuple(RosterEntry(person, site, person) for person, site in homes.items())
     needed = tuple(column for column in (declared.person, declared.name, declared.site) if column)
     table = read_table(study.path(declared.file), declared.file, needed, faults)
+    if table is not None and not table.rows:
+        faults.add(table.file, "", "empty", "has a header and no rows", "write one row per person")
     found: dict[int, RosterEntry] = {}
     spare: list[RosterEntry] = []
     for line, row in table or ():
@@ -36,19 +39,11 @@ def read_roster(study: Study, people: PeopleTable, faults: Faults) -> tuple[Rost
             faults.add(declared.file, f"line {line}, column {column}", kind, what, mend)
         if not wrong:
             found[line] = entry
-        elif entry.person in homes:
-            spare.append(RosterEntry(entry.person, homes[entry.person], entry.person))
+        elif (
+            person := entry.person if entry.person in homes else lookalike(entry.person, homes)
+        ) is not None:
+            spare.append(RosterEntry(person, homes[person], person))
     return _once_each(declared, found, faults) + tuple(spare)
-
-
-def mend_unknown(person: str, known: Collection[str], otherwise: str) -> str:
-    """How to mend an id that is not ``known``: the known one that looks alike, if there is one.
-
-    >>> mend_unknown("7", ["007"], "add it"), mend_unknown("8", ["007"], "add it")
-    ("did you mean '007'?", 'add it')
-    """
-    other = lookalike(person, known)
-    return otherwise if other is None else f"did you mean '{other}'?"
 
 
 def _entry(declared: Roster, row: dict[str, str], homes: Mapping[str, str]) -> RosterEntry:
@@ -66,7 +61,7 @@ def _wrong(
     if is_missing(person):
         wrong.append((declared.person, "missing-id", "there is no id", "write the id of the people table"))
     elif person not in homes:
-        mend = mend_unknown(person, homes, "add the person to the people table, or take the row out")
+        mend = mend_unknown(person, homes, MEND_STRANGER)
         wrong.append((declared.person, "unknown-person", f"'{person}' is not in the people table", mend))
     if declared.name and (is_missing(row[declared.name]) or not name_key(row[declared.name])):
         wrong.append((declared.name, "missing-name", "there is no name", "write it as others would write it"))
@@ -90,8 +85,9 @@ def _once_each(declared: Roster, found: Mapping[int, RosterEntry], faults: Fault
     for line, entry in found.items():
         name = entry.person if declared.name is None else name_key(entry.name)
         if entry.person in persons:
-            faults.add(declared.file, f"lines {persons[entry.person]} and {line}", "duplicate-person",
-                       f"'{entry.person}' stands twice", "keep one row per person")  # fmt: skip
+            faults.add(declared.file, f"line {line}", "duplicate-id",
+                       f"'{entry.person}' stands on line {persons[entry.person]} already",
+                       "keep one row per person")  # fmt: skip
             continue
         persons[entry.person] = line
         if names.setdefault((entry.site, name), line) != line:

@@ -5,8 +5,9 @@ from __future__ import annotations
 import csv
 import io
 import re
+import unicodedata
 from collections import Counter
-from collections.abc import Collection, Iterator
+from collections.abc import Collection, Iterator, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -18,6 +19,12 @@ MISSING = "n/a"
 
 MOST_RAGGED = 5
 """How many lines of a wrong length are cited before the rest is only counted."""
+
+LARGEST = 1e100
+"""Numbers beyond this are refused: their squares and products have to be held as well."""
+
+MOST_IDS = 10
+"""How many ids a message lists before it only counts the rest."""
 
 _NUMBER = re.compile(r"[+-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?")
 _ZEROS = re.compile(r"(?<![0-9])0+(?=[0-9])")
@@ -55,31 +62,52 @@ def is_missing(cell: str) -> bool:
 
 
 def as_number(cell: str) -> float | None:
-    """The number that a cell spells in plain digits, or None when it spells none.
+    """The number that a cell spells in plain digits, or None when it spells none up to `LARGEST`.
 
-    >>> as_number("-1.5e3"), as_number("1,5"), as_number("nan")
-    (-1500.0, None, None)
+    >>> as_number("-1.5e3"), as_number("1,5"), as_number("nan"), as_number("1e400")
+    (-1500.0, None, None, None)
     """
-    return float(cell) if _NUMBER.fullmatch(cell) else None
+    number = float(cell) if _NUMBER.fullmatch(cell) else None
+    return number if number is not None and abs(number) <= LARGEST else None
 
 
 def loose_form(label: str) -> str:
-    """What is left of an id or label when case and leading zeros do not count.
+    """What is left of an id or label when case, leading zeros and Unicode composition do not count.
 
     >>> loose_form("Sub-007") == loose_form("sub-7"), loose_form("10") == loose_form("1")
     (True, False)
     """
-    return _ZEROS.sub("", label.casefold())
+    return _ZEROS.sub("", unicodedata.normalize("NFKC", label).casefold())
 
 
 def lookalike(label: str, known: Collection[str]) -> str | None:
-    """The known label that differs from this one by case or leading zeros only, if there is one.
+    """The known label that has the same loose form as this one, if there is one.
 
     >>> lookalike("sub-7", ["sub-007", "sub-008"])
     'sub-007'
     """
     loose = loose_form(label)
     return next((other for other in known if loose_form(other) == loose), None)
+
+
+def mend_unknown(person: str, known: Collection[str], otherwise: str) -> str:
+    """How to mend an id that is not ``known``: the known one that looks alike, if there is one.
+
+    >>> mend_unknown("7", ["007"], "add it"), mend_unknown("8", ["007"], "add it")
+    ("did you mean '007'?", 'add it')
+    """
+    other = lookalike(person, known)
+    return otherwise if other is None else f"did you mean '{other}'?"
+
+
+def listed(ids: Sequence[str]) -> str:
+    """Ids for a message: the first of them, and how many more there are.
+
+    >>> listed(["007", "NA"]), listed(["a"] * 12)[-12:]
+    ('007, NA', 'a and 2 more')
+    """
+    more = f" and {len(ids) - MOST_IDS} more" if len(ids) > MOST_IDS else ""
+    return ", ".join(ids[:MOST_IDS]) + more
 
 
 def read_table(path: Path, shown: str, needed: tuple[str, ...], faults: Faults) -> TextTable | None:
@@ -113,14 +141,23 @@ def read_table(path: Path, shown: str, needed: tuple[str, ...], faults: Faults) 
 def read_text(path: Path, shown: str, faults: Faults) -> str | None:
     """The text of a UTF-8 file, or None with the reason in ``faults``."""
     try:
-        return path.read_text(encoding="utf-8-sig")
+        content = path.read_bytes()
+        text = content.decode("utf-8-sig")
     except FileNotFoundError:
         faults.add(shown, "", "missing-file", "there is no such file", "correct the path in the study file")
     except OSError as error:
-        faults.add(shown, "", "unreadable", f"cannot be read ({error.strerror})", "check its permissions")
+        faults.add(shown, "", "unreadable", f"cannot be read ({error.strerror})",
+                   "correct the path, or the file's permissions")  # fmt: skip
     except UnicodeDecodeError as error:
-        line = path.read_bytes()[: error.start].count(b"\n") + 1
-        faults.add(shown, f"line {line}", "encoding", "is not UTF-8 text", "save the file as UTF-8")
+        line = content[: error.start].count(b"\n") + 1
+        faults.add(shown, f"line {line}", "encoding", "is not UTF-8 text",
+                   "save the file as UTF-8 text; export a spreadsheet as .csv")  # fmt: skip
+    else:
+        if "\0" not in text:
+            return text
+        line = text[: text.index("\0")].count("\n") + 1
+        faults.add(shown, f"line {line}", "encoding", "holds a character that text cannot hold",
+                   "save the file again as UTF-8 text")  # fmt: skip
     return None
 
 

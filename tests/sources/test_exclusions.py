@@ -106,9 +106,9 @@ def test_below_and_above_leave_the_limit_in(tmp_path: Path) -> None:
         ("007\t1\t0.9", "duplicate-id", "", True),
         ("\t1\t0.9", "missing-id", "", True),
         ("c\tn/a\t0.9", "missing-id", "", True),
-        ("C\t1\t0.9", "alike-person", ", column id", True),
-        ("7\t1\t0.9", "alike-person", ", column id", True),
-        ("zz\t1\t0.9", "unknown-person", ", column id", False),
+        ("C\t1\t0.9", "unknown-person", ", column id", True),
+        ("7\t1\t0.9", "unknown-person", ", column id", True),
+        ("zz\t1\t0.9", "unknown-person", ", column id", True),
         ("c\t01\t0.9", "alike-visit", ", column visit", True),
         ("c\t3\t0.9", "unknown-visit", ", column visit", False),
         ("c\t1\tmuch", "not-a-number", ", column motion", True),
@@ -159,7 +159,7 @@ def test_who_answered(tmp_path: Path) -> None:
     of = study(tmp_path, status=STATUS)
     assert read_answered(of, faults, known={"007", "NA", "c", "d"}) == {"007"}
     assert places(list(faults)) == [
-        ("status.tsv:line 5, column id", "unknown-person", False),
+        ("status.tsv:line 5, column id", "unknown-person", True),
         ("status.tsv:line 4, column status", "no-value", False),
     ]
     assert read_answered(of, Faults()) == {"007", "zz"}

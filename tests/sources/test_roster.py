@@ -63,7 +63,12 @@ def test_site_and_name_may_be_left_out(read: Reader) -> None:
     ("rows", "kind", "place", "says"),
     [
         (("007\tÄnna  Berg\tnorth", "NA\tBERG, anna\tnorth"), "duplicate-name", "lines 2 and 3", "'north'"),
-        (("007\tAnna Berg\tnorth", "007\tKim Lee\tnorth"), "duplicate-person", "lines 2 and 3", "'007'"),
+        (
+            ("007\tAnna Berg\tnorth", "007\tKim Lee\tnorth"),
+            "duplicate-id",
+            "line 3",
+            "'007' stands on line 2",
+        ),
         (("08\tKim Lee\tnorth",), "unknown-person", "line 2, column participant_id", "add the person"),
         (("7\tKim Lee\tnorth",), "unknown-person", "line 2, column participant_id", "did you mean '007'?"),
         (("na\tKim Lee\tnorth",), "unknown-person", "line 2, column participant_id", "did you mean 'NA'?"),
