@@ -10,7 +10,7 @@ import numpy as np
 import pandas as pd
 
 from socibrain.cohort.brains import BrainTask, MeasuredBrain, measure_brains
-from socibrain.cohort.columns import describe_columns
+from socibrain.cohort.columns import describe_columns, measure_columns
 from socibrain.cohort.gather import Gathered, gather
 from socibrain.cohort.ledger import Branch, Leaving, flow_table, ledger_table
 from socibrain.cohort.positions import Positions, measure_positions
@@ -37,7 +37,10 @@ def measure_study(
     """
     faults = Faults()
     gathered = gather(study, faults)
-    brains = read_brains(gathered, version=version, memory=memory, workers=workers, measuring=True, done=done)
+    measuring = not faults.any_grave
+    brains = read_brains(
+        gathered, version=version, memory=memory, workers=workers, measuring=measuring, done=done
+    )
     found = [*faults, *(fault for brain in brains for fault in brain.faults)]
     refuse_grave(found)
     says = study.says
@@ -132,7 +135,9 @@ def _persons(gathered: Gathered, positions: Positions, usable: Sequence[Measured
     social = positions.persons.reindex(table["person"])
     social.index = table.index
     organised = pd.DataFrame([measured.get(key, {}) for key in keys], index=table.index, dtype=np.float64)
-    return pd.concat([table, social, organised], axis=1)
+    joined = pd.concat([table, social, organised], axis=1)
+    promised = measure_columns(gathered.study.says)
+    return joined.reindex(columns=list(dict.fromkeys([*joined.columns, *promised])))
 
 
 def _regions(gathered: Gathered, usable: Sequence[MeasuredBrain]) -> pd.DataFrame:

@@ -14,6 +14,8 @@ from socibrain.measures.social.at_hand import SiteAtHand
 from socibrain.networks.social import SocialNetwork
 from socibrain.streams import small_seed
 
+NOBODY = "nobody of the site answered"
+
 
 @dataclass(frozen=True)
 class Positions:
@@ -37,7 +39,8 @@ def measure_positions(networks: Sequence[SocialNetwork], *, seed: int, own_answe
     """Every social measure on every site network.
 
     With ``own_answers_missing`` "undefined", measures that need a person's own answers have no
-    value for people who did not answer.
+    value for people who did not answer.  Where nobody answered nothing is known, and no measure
+    has a value.
     """
     persons: dict[str, dict[str, float]] = {}
     sites: dict[str, dict[str, float]] = {}
@@ -46,11 +49,15 @@ def measure_positions(networks: Sequence[SocialNetwork], *, seed: int, own_answe
         at_hand = SiteAtHand(network, small_seed(seed, "social", network.question, network.site))
         in_site = sites.setdefault(network.site, {})
         for each in social_measures("site"):
-            in_site[f"{network.question}.{each.name}"] = float(each.function(at_hand))
+            known = network.answered.any()
+            in_site[f"{network.question}.{each.name}"] = float(each.function(at_hand)) if known else np.nan
         for each in social_measures("person"):
             values = np.array(each.function(at_hand), dtype=np.float64)
             column = f"{network.question}.{each.name}"
-            if len(values) and np.isnan(values).all():
+            if not network.answered.any():
+                leavings.append(Leaving(column, "social", "", network.site, "", NOBODY))
+                values[:] = np.nan
+            elif len(values) and np.isnan(values).all():
                 leavings.append(Leaving(column, "social", "", network.site, "", each.undefined))
             if "own answers" in each.needs and own_answers_missing == "undefined":
                 values[~network.answered] = np.nan

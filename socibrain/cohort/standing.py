@@ -24,7 +24,11 @@ def social_branch(gathered: Gathered) -> tuple[Branch, list[Leaving]]:
             answered |= {person} if spoke else set()
             tied |= {person} if linked else set()
     tied &= answered
-    leavings = []
+    leavings = [
+        Leaving(ROSTER, "social", person, gathered.site(person), "", "not on the roster")
+        for person in gathered.people.ids
+        if person not in site
+    ]
     for person in sorted(site):
         if person not in answered:
             reason = by_rule.get(person, "did not answer")
@@ -68,13 +72,18 @@ def brain_branch(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[B
 
 
 def single_scans(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> list[Leaving]:
-    """Single visits that cannot be used, of people who have another scan that can."""
+    """Single visits, or single inputs of a visit, that cannot be used of people with a scan that can."""
     lost = lost_scans(gathered, brains)
-    has_another = {brain.origin.person for brain in brains if _key(brain) not in lost}
+    usable = {_key(brain) for brain in brains} - lost.keys()
+    for _, person, visit in usable:
+        for source in gathered.study.says.brain:
+            if (source, person, visit) not in usable:
+                lost.setdefault((source, person, visit), "there is no network file")
+    has_another = {person for _, person, _ in usable}
     return [
-        Leaving(QUALITY, "brain", person, gathered.site(person), visit, f"{source}: {reason}")
+        Leaving(f"{QUALITY} in {source}", "brain", person, gathered.site(person), visit, reason)
         for (source, person, visit), reason in sorted(lost.items())
-        if visit and person in has_another
+        if person in has_another
     ]
 
 

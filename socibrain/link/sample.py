@@ -82,7 +82,10 @@ def _why(cohort: Cohort, name: str, person: str, visit: str) -> str:
         return f"'{name}': missing"
     side = "social" if about.origin in {network.question for network in cohort.social} else "brain"
     ledger = cohort.ledger
+    others = {column.origin for column in cohort.columns.values()} - {about.origin, ""}
+    elsewhere = ledger["stage"].str.endswith(tuple(f" in {other}" for other in others))
     mine = (ledger["person"] == person) & (ledger["side"] == side) & ledger["visit"].isin([visit, ""])
+    mine &= ~elsewhere.astype(bool)
     told = list(dict.fromkeys(ledger.loc[mine, "reason"]))
     return ", ".join(told) if told else f"'{name}': undefined ({about.undefined})"
 
