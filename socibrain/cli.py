@@ -219,14 +219,14 @@ def _faults(problems: pd.DataFrame) -> list[Fault]:
 
 
 def _tell_lesser(problems: pd.DataFrame, out: Path) -> None:
-    """What was found wrong and did not stop the run: each kind in one line, by its first case."""
+    """What was found wrong and did not stop the run: each kind by its first case."""
     kinds: dict[str, list[Fault]] = {}
     for fault in _faults(problems):
         if not fault.grave:
             kinds.setdefault(fault.kind, []).append(fault)
     if not kinds:
         return
-    _tell(f"problems that do not stop the run, and how to mend them, are in {out / 'problems.csv'}:")
+    _tell(f"problems that do not stop the run (all of them: {out / 'problems.csv'}):")
     for kind, (first, *others) in kinds.items():
         more = f" (and {len(others)} more of this kind)" if others else ""
-        _tell(f"  {kind}: {first.where}  {first.found}{more}")
+        _tell(f"  {kind}: {first.where}  {first.found}{more}\n    to mend: {first.mend}")

@@ -13,7 +13,7 @@ from joblib import cpu_count
 from socibrain.cohort.assemble import measure_study
 from socibrain.cohort.audit import Audit, audit_study
 from socibrain.cohort.columns import numeric_columns
-from socibrain.cohort.gather import gather, input_files
+from socibrain.cohort.gather import gather, input_files, named_tables
 from socibrain.cohort.table import Cohort
 from socibrain.documents import nearest
 from socibrain.errors import DataRefused, DocumentRefused, Fault, Faults, Refusal
@@ -62,7 +62,7 @@ class Answer:
                 ("hypotheses", number),
                 "unanswerable",
                 f"'{finding.hypothesis.id}' cannot be answered: {finding.reason}",
-                "take it out, or change it or the study so that it can be",
+                "take it out, or change plan or study so that it can be; ledger.csv tells who lacks what",
             )
             for number, finding in enumerate(self.findings.findings)
             if finding.status == "refused"
@@ -109,10 +109,8 @@ def audit(
 ) -> Audit:
     """What a study holds, what was left out of it and why; written to ``out`` when given."""
     study = study if isinstance(study, Study) else read_study(study)
-    folder = _opened(out)
-    found, gathered = audit_study(
-        study, version=VERSION, workers=workers or cpu_count(), done=_teller(tell, "read")
-    )
+    folder = _opened(out, study)
+    found, gathered = audit_study(study, version=VERSION, workers=workers or cpu_count(), done=_teller(tell))
     if folder:
         folder.write(outputs.of_audit(found))
         faults = Faults()
@@ -132,7 +130,7 @@ def measure(
 ) -> Cohort:
     """Networks to numbers for everyone in a study; tables written to ``out`` when given."""
     study = study if isinstance(study, Study) else read_study(study)
-    folder, clock = _opened(out), Clock()
+    folder, clock = _opened(out, study), Clock()
     cohort = _measured(study, folder, workers, tell, clock)
     if folder:
         record = _record(study, None, clock)
@@ -150,7 +148,7 @@ def link(
     """Answer the hypotheses of a plan; everything written to ``out`` when given."""
     plan_read = read_plan(plan)
     study = _study_of(plan_read)
-    folder, clock = _opened(out), Clock()
+    folder, clock = _opened(out, study), Clock()
     options = plan_read.options(study.says.visits)
     check_columns(plan_read, numeric_columns(gather(study, Faults())))
     cohort = _measured(study, folder, workers, tell, clock)
@@ -197,7 +195,20 @@ def report_run(run: str | Path, *, workers: int | None = None, tell: Tell = sile
                 "run `socibrain link PLAN --out` first",
             )
         )
-    record = json.loads(recorded.read_text(encoding="utf-8"))
+    try:
+        record = json.loads(recorded.read_text(encoding="utf-8"))
+    except ValueError:
+        record = None
+    if not isinstance(record, dict) or not {"socibrain", "study_file", "study_digest"} <= record.keys():
+        raise DataRefused(
+            Fault(
+                str(recorded),
+                "",
+                "no-record",
+                "is not the record of a run",
+                "answer the plan anew: socibrain link",
+            )
+        )
     if not record.get("plan_file"):
         raise DataRefused(
             Fault(
@@ -233,9 +244,21 @@ def no_such_measure(name: str) -> str:
     return f"there is no measure '{name}'; {nearest(name, all_measures())}"
 
 
-def _opened(out: str | Path | None) -> RunFolder | None:
+def _opened(out: str | Path | None, study: Study) -> RunFolder | None:
+    """The run folder, shown to be writable and to hold no table of the study that could be overwritten."""
     if out is None:
         return None
+    tables = [study.document.path, *(study.path(file) for file in named_tables(study))]
+    if Path(out).resolve() in {table.resolve().parent for table in tables}:
+        raise DataRefused(
+            Fault(
+                str(out),
+                "",
+                "holds-inputs",
+                "holds what the study reads",
+                "give results a folder of their own",
+            )
+        )
     folder = RunFolder(Path(out))
     folder.open()
     return folder
@@ -250,16 +273,16 @@ def _measured(
             version=VERSION,
             memory=folder.memory if folder else None,
             workers=workers or cpu_count(),
-            done=_teller(tell, "measured"),
+            done=_teller(tell),
         )
 
 
-def _teller(tell: Tell, verb: str) -> Callable[[int, int], None]:
+def _teller(tell: Tell) -> Callable[[int, int], None]:
     """Tell of every fiftieth network and of the last."""
 
     def done(count: int, of: int) -> None:
         if count % 50 == 0 or count == of:
-            tell(f"{count} of {of} brain networks {verb}")
+            tell(f"{count} of {of} brain networks done")
 
     return done
 
