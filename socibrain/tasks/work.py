@@ -3,10 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Sequence
+from functools import cache
 from typing import TypeVar
 
 from joblib import Parallel, delayed
-from threadpoolctl import threadpool_limits
+from threadpoolctl import ThreadpoolController
 
 Item = TypeVar("Item")
 Result = TypeVar("Result")
@@ -40,5 +41,11 @@ def run_tasks(
 
 def _alone(function: Callable[[Item], Result], item: Item) -> Result:
     """One task on one thread: the workers are the parallelism."""
-    with threadpool_limits(limits=1):
+    with _threads().limit(limits=1):
         return function(item)
+
+
+@cache
+def _threads() -> ThreadpoolController:
+    """The libraries that start threads, looked for once: looking takes longer than a small task."""
+    return ThreadpoolController()
