@@ -97,6 +97,8 @@ class Faults:
 
     def add(self, file: str, place: str, kind: str, found: str, mend: str, *, grave: bool = True) -> None:
         """Put one fault on record; what two readers of one file find alike is one fault."""
+        # A file name need not be text: what cannot be written as UTF-8 is spelt out.
+        file, found = (text.encode(errors="backslashreplace").decode() for text in (file, found))
         self._found[Fault(file, place, kind, found, mend, grave)] = None
 
     def __iter__(self) -> Iterator[Fault]:

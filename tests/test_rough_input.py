@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import os
 import shutil
 from pathlib import Path
 
@@ -306,6 +307,37 @@ def test_a_missing_matrix_named_almost_right_is_pointed_out(study: MadeStudy) ->
     told = study.run("measure")
     assert "brain/N3.tsv  the people table has no 'N3'" in told.err
     assert "is it 'n03'?" in told.err
+
+
+def test_a_file_name_that_is_no_text(study: MadeStudy) -> None:
+    try:
+        (study.folder / "brain" / os.fsdecode(b"\xff.tsv")).write_text("1")
+    except OSError:
+        pytest.skip("this file system knows text only")
+    told = study.run("audit")
+    assert told.code == 0
+    assert "the people table has no '\\udcff'" in told.err
+
+
+def test_tables_whose_columns_would_be_called_alike(study: MadeStudy) -> None:
+    rule = "  - {file: FILE, column: motion, above: 0.5, because: moved}\n"
+    rules = [rule.replace("FILE", file) for file in ("a/scans.tsv", "b/scans.tsv", "rest.tsv")]
+    study.write("study.yaml", study.text("study.yaml") + "exclusions:\n" + "".join(rules))
+    end = "in our tables"
+    assert_told(
+        study.run("measure"),
+        3,
+        (
+            f"{study.folder / 'study.yaml'}:37:6",
+            f"exclusions[1].file: two things would be called 'scans.…' {end}",
+            "",
+        ),
+        (
+            f"{study.folder / 'study.yaml'}:38:6",
+            f"exclusions[2].file: two things would be called 'rest.…' {end}",
+            "",
+        ),
+    )
 
 
 def test_stopping_by_hand(study: MadeStudy, monkeypatch: pytest.MonkeyPatch) -> None:

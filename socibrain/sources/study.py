@@ -5,7 +5,7 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator
 from dataclasses import dataclass
-from pathlib import Path
+from pathlib import Path, PurePosixPath
 from typing import Annotated, Any, Literal
 
 from pydantic import BeforeValidator, Field, model_validator
@@ -256,8 +256,14 @@ def _doubtful_brains(study: Study) -> Iterator[Fault]:
 
 def _doubtful_rules(study: Study) -> Iterator[Fault]:
     says, at = study.says, study.document.fault
+    origins = {*says.brain, *(says.questionnaire.questions if says.questionnaire else ())}
+    tables: dict[str, str] = {}
     for number, rule in enumerate(says.exclusions):
         here = ("exclusions", number)
+        stem = PurePosixPath(rule.file).stem if rule.file else ""
+        if rule.file and (stem in origins or tables.setdefault(stem, rule.file) != rule.file):
+            yield at((*here, "file"), "same-name", f"two things would be called '{stem}.…' in our tables",
+                     "give the file another name")  # fmt: skip
         if rule.leaves_out_of != "social" and not says.brain:
             yield at(here, "nothing-to-exclude", "leaves people out of a brain side that is not there",
                      "write `leaves_out_of: social`")  # fmt: skip
