@@ -49,12 +49,26 @@ def value_of(measure: Measure, site: SiteAtHand) -> np.ndarray:
     return np.asarray(measure.function(site), dtype=np.float64)
 
 
+def silent(site: SiteAtHand) -> np.ndarray:
+    return ~site.network.answered
+
+
+def nobody_can_tell_contacts(site: SiteAtHand) -> np.ndarray:
+    """A tie that takes both cannot be known of somebody who did not answer."""
+    return silent(site) & (site.network.rule == "both")
+
+
+def nobody_can_tell_paths(site: SiteAtHand) -> np.ndarray:
+    """Nor can a way onward from such a person, unless one report makes a tie both ways."""
+    return silent(site) & (site.network.rule != "either")
+
+
 def no_contact(site: SiteAtHand) -> np.ndarray:
-    return ~(site.ties + site.ties.T).any(axis=1)
+    return ~(site.ties + site.ties.T).any(axis=1) | nobody_can_tell_contacts(site)
 
 
 def no_class(site: SiteAtHand) -> np.ndarray:
-    return np.array([role is None for role in site.network.roles])
+    return np.array([role is None for role in site.network.roles]) | nobody_can_tell_paths(site)
 
 
 def nobody_to_return(site: SiteAtHand) -> np.ndarray:
@@ -71,18 +85,25 @@ def same_best_contacts(site: SiteAtHand) -> np.ndarray:
     degrees = site.contacts.sum(axis=1)
     best = degrees >= np.sort(degrees)[::-1][int(np.ceil(len(degrees) / 4)) - 1]
     counts = np.concatenate([block[:, :, best].sum(axis=2) for block in site.drawn_contacts.networks()])
-    return (counts == counts[0]).all(axis=0)
+    return (counts == counts[0]).all(axis=0) | nobody_can_tell_contacts(site)
 
 
 def no_club(site: SiteAtHand) -> bool:
     return not site.club.p <= 0.05
 
 
+def no_member_known(site: SiteAtHand) -> np.ndarray:
+    return nobody_can_tell_contacts(site) | no_club(site)
+
+
 UNDEFINED: dict[str, Callable[[SiteAtHand], np.ndarray | bool]] = {
+    "out_degree": silent,
+    "mutual_degree": silent,
+    "betweenness": nobody_can_tell_paths,
     "constraint": no_contact,
     "effective_size": no_contact,
     "reciprocity": nobody_to_return,
-    "rich_club_member": no_club,
+    "rich_club_member": no_member_known,
     "rich_club_from_degree": no_club,
     "ties_to_best_connected": same_best_contacts,
     **dict.fromkeys(ROLES, no_class),
@@ -168,6 +189,23 @@ def test_only_being_named_is_known_without_own_answers() -> None:
     assert free == {"in_degree"}
     assert all({"roles", "own answers"} <= all_measures()[role].needs for role in ROLES)
     assert "club" in all_measures()["rich_club_member"].needs
+
+
+def test_silence_is_never_a_position_of_nobody() -> None:
+    """Person 4 did not answer and is named by 0, 1 and 3: what only that person could say is unknown."""
+    named = np.zeros((5, 5), dtype=bool)
+    for chooser, chosen in enumerate([(1, 2, 4), (0, 4), (0, 1), (0, 4), ()]):
+        named[chooser, chosen] = True
+    answered = np.arange(5) != 4
+    known = {}
+    for rule in ("directed", "either", "both"):
+        site = site_of(named, rule=rule, answered=answered, roles=tuple("xxyyx"))
+        known[rule] = {
+            each.name for each in SOCIAL if each.scale == "person" and not np.isnan(value_of(each, site)[4])
+        }
+    assert known["both"] == {"in_degree", "either_degree"}
+    assert known["directed"] - known["both"] == {"constraint", "effective_size"}
+    assert known["either"] - known["directed"] == {"betweenness", *ROLES}
 
 
 def test_in_degree_does_not_depend_on_own_answers() -> None:

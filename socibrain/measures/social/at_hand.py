@@ -74,6 +74,21 @@ class SiteAtHand:
         return degrees
 
     @cached_property
+    def contacts_known(self) -> Mask:
+        """Whose contacts are known, if only from others.
+
+        Where a tie takes both, nobody can tell whom a person who did not answer is tied to.
+        """
+        answered = self.network.answered
+        return answered if self.network.rule == "both" else np.ones_like(answered)
+
+    @cached_property
+    def onward_known(self) -> Mask:
+        """Whose ties towards others are known: where one report makes a tie both ways, from others too."""
+        answered = self.network.answered
+        return np.ones_like(answered) if self.network.rule == "either" else answered
+
+    @cached_property
     def classes(self) -> Codes:
         """A whole number per class; `UNKNOWN` where a person's class is missing."""
         numbers = {

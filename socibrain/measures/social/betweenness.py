@@ -37,4 +37,5 @@ def betweenness(site: SiteAtHand) -> Array:
     >>> betweenness(bare_site([[1], [2], [3], []], rule="either")).tolist()
     [0.0, 2.0, 2.0, 0.0]
     """
-    return np.array(site.graph.betweenness(directed=site.directed), dtype=np.float64)
+    through = np.array(site.graph.betweenness(directed=site.directed), dtype=np.float64)
+    return np.where(site.onward_known, through, np.nan)

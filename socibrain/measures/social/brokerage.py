@@ -76,7 +76,8 @@ def itinerant(site: SiteAtHand) -> Array:
     unit="open paths (each triad twice where ties have no direction)",
     low=0,
     high=np.inf,
-    reading="higher = brokers more often from another class into one's own",
+    reading="higher = brokers more often from another class into one's own; where ties have no direction "
+    "the same as representative",
     undefined=UNDEFINED,
     source=SOURCE,
     needs=("own answers", "roles"),
@@ -102,7 +103,8 @@ def gatekeeper(site: SiteAtHand) -> Array:
     unit="open paths (each triad twice where ties have no direction)",
     low=0,
     high=np.inf,
-    reading="higher = brokers more often from one's own class to another",
+    reading="higher = brokers more often from one's own class to another; where ties have no direction "
+    "the same as gatekeeper",
     undefined=UNDEFINED,
     source=SOURCE,
     needs=("own answers", "roles"),
@@ -148,5 +150,4 @@ def liaison(site: SiteAtHand) -> Array:
 
 
 def _count(site: SiteAtHand, role: str) -> Array:
-    counts: Array = site.role_counts[ROLES.index(role)]
-    return counts
+    return np.where(site.onward_known, site.role_counts[ROLES.index(role)], np.nan)

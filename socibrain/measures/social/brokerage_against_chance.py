@@ -82,7 +82,8 @@ def itinerant_against_chance(site: SiteAtHand) -> Array:
     unit="SDs of the random networks",
     low=-np.inf,
     high=np.inf,
-    reading="higher = brokers from another class into one's own more than by one's number of ties alone",
+    reading="higher = brokers from another class into one's own more than by one's number of ties alone; "
+    "where ties have no direction the same as representative_against_chance",
     undefined=UNDEFINED,
     source=SOURCE,
     needs=("own answers", "roles"),
@@ -111,7 +112,8 @@ def gatekeeper_against_chance(site: SiteAtHand) -> Array:
     unit="SDs of the random networks",
     low=-np.inf,
     high=np.inf,
-    reading="higher = brokers from one's own class to another more than by one's number of ties alone",
+    reading="higher = brokers from one's own class to another more than by one's number of ties alone; "
+    "where ties have no direction the same as gatekeeper_against_chance",
     undefined=UNDEFINED,
     source=SOURCE,
     needs=("own answers", "roles"),
@@ -164,4 +166,5 @@ def liaison_against_chance(site: SiteAtHand) -> Array:
 
 def _against_chance(site: SiteAtHand, role: str) -> Array:
     place = ROLES.index(role)
-    return deviation_from_chance(site.role_counts[place], site.drawn_role_counts[place])
+    excess = deviation_from_chance(site.role_counts[place], site.drawn_role_counts[place])
+    return np.where(site.onward_known, excess, np.nan)

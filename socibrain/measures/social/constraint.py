@@ -37,4 +37,4 @@ def constraint(site: SiteAtHand) -> Array:
     >>> constraint(bare_site([[1, 2], [2], [], []], rule="either")).tolist()
     [1.125, 1.125, 1.125, nan]
     """
-    return holes.constraint(site.sparse_ties)
+    return np.where(site.contacts_known, holes.constraint(site.sparse_ties), np.nan)

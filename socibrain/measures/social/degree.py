@@ -56,7 +56,7 @@ def out_degree(site: SiteAtHand) -> Array:
     >>> out_degree(bare_site([[1, 2], [0], []])).tolist()
     [2.0, 1.0, 0.0]
     """
-    return np.asarray(site.network.named.sum(axis=1), dtype=np.float64)
+    return np.where(site.network.answered, site.network.named.sum(axis=1), np.nan)
 
 
 @measure(
@@ -104,4 +104,5 @@ def mutual_degree(site: SiteAtHand) -> Array:
     >>> mutual_degree(bare_site([[1, 2], [0], []])).tolist()
     [1.0, 1.0, 0.0]
     """
-    return np.asarray((site.network.named & site.network.named.T).sum(axis=1), dtype=np.float64)
+    mutual = (site.network.named & site.network.named.T).sum(axis=1)
+    return np.where(site.network.answered, mutual, np.nan)

@@ -37,4 +37,4 @@ def effective_size(site: SiteAtHand) -> Array:
     >>> effective_size(bare_site([[1, 2, 3], [2], [], []], rule="either")).round(3).tolist()
     [2.333, 1.0, 1.0, 1.0]
     """
-    return holes.effective_size(site.sparse_ties)
+    return np.where(site.contacts_known, holes.effective_size(site.sparse_ties), np.nan)

@@ -45,7 +45,7 @@ def rich_club_member(site: SiteAtHand) -> Array:
     """
     if np.isnan(site.club.from_degree):
         return np.full(site.people, np.nan)
-    return (site.contact_degrees >= site.club.from_degree).astype(np.float64)
+    return np.where(site.contacts_known, site.contact_degrees >= site.club.from_degree, np.nan)
 
 
 @measure(

@@ -49,7 +49,8 @@ def ties_to_best_connected(site: SiteAtHand) -> Array:
         for one, other in ((pairs[..., 0], pairs[..., 1]), (pairs[..., 1], pairs[..., 0]))
     )
     drawn = np.asarray(counts, dtype=np.float64).reshape(len(pairs), site.people)
-    return deviation_from_chance(site.contacts[:, best].sum(axis=1).astype(np.float64), drawn)
+    lean = deviation_from_chance(site.contacts[:, best].sum(axis=1).astype(np.float64), drawn)
+    return np.where(site.contacts_known, lean, np.nan)
 
 
 def best_connected(site: SiteAtHand) -> Mask:

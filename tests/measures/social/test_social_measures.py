@@ -9,6 +9,7 @@ import pytest
 from socibrain.measures.algorithms.brokerage import ROLES
 from socibrain.measures.catalogue import find_measure
 from socibrain.measures.social.at_hand import SiteAtHand
+from socibrain.sources.study import TieRule
 from tests.measures.made_sites import planted_club, random_named, random_ties, site_of
 
 
@@ -94,6 +95,18 @@ def test_open_triads_count_twice_without_direction() -> None:
     assert values("coordinator", site_of(chain, roles=roles)) == [0, 1, 0]
     assert values("coordinator", site_of(chain, roles=roles, rule="either")) == [0, 2, 0]
     assert values("coordinator", site_of(chain, roles=roles, rule="both")) == [0, 0, 0]
+
+
+@pytest.mark.parametrize("rule", ["either", "both"])
+def test_in_and_out_of_ones_class_are_one_thing_without_direction(rule: TieRule) -> None:
+    site = site_of(
+        random_named(8, chance=0.4), rule=rule, roles=tuple("abc"[place % 3] for place in range(16))
+    )
+    assert max(values("gatekeeper", site)) > 0
+    assert values("gatekeeper", site) == values("representative", site)
+    assert values("gatekeeper_against_chance", site) == pytest.approx(
+        values("representative_against_chance", site), nan_ok=True
+    )
 
 
 def test_brokerage_against_chance_is_centred_on_random_networks() -> None:
