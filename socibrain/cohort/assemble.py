@@ -11,39 +11,38 @@ import pandas as pd
 
 from socibrain.cohort.brains import BrainTask, MeasuredBrain, measure_brains
 from socibrain.cohort.columns import describe_columns, measure_columns
-from socibrain.cohort.gather import Gathered, gather
+from socibrain.cohort.gather import Gathered
 from socibrain.cohort.ledger import Branch, Leaving, flow_table, ledger_table
 from socibrain.cohort.positions import Positions, measure_positions
 from socibrain.cohort.standing import brain_branch, lost_scans, single_scans, social_branch
 from socibrain.cohort.table import Cohort
 from socibrain.errors import Fault, Faults
-from socibrain.sources.study import Study
 
 PROBLEM_COLUMNS = ["file", "place", "kind", "found", "mend", "grave"]
 
 
 def measure_study(
-    study: Study,
+    gathered: Gathered,
+    faults: Faults,
     *,
     version: str,
     memory: Path | None,
     workers: int,
     done: Callable[[int, int], None],
 ) -> Cohort:
-    """Read everything the study names and measure it.
+    """Read the matrices of a gathered study and measure everything.
 
-    ``memory`` is a folder for finished work (None: keep nothing), ``done`` is told how many of
-    how many brain networks are measured.  Raises `DataRefused` with all grave faults.
+    ``faults`` holds what gathering found, ``memory`` is a folder for finished work (None: keep
+    nothing), ``done`` is told how many of how many brain networks are measured.  Raises
+    `DataRefused` with all grave faults.
     """
-    faults = Faults()
-    gathered = gather(study, faults)
     measuring = not faults.any_grave
     brains = read_brains(
         gathered, version=version, memory=memory, workers=workers, measuring=measuring, done=done
     )
     found = [*faults, *(fault for brain in brains for fault in brain.faults)]
     refuse_grave(found)
-    says = study.says
+    says = gathered.study.says
     asked = says.questionnaire
     positions = measure_positions(
         gathered.networks,

@@ -8,10 +8,9 @@ from dataclasses import dataclass
 import pandas as pd
 
 from socibrain.cohort.assemble import problem_table, read_brains, stand
-from socibrain.cohort.gather import Gathered, gather
+from socibrain.cohort.gather import Gathered
 from socibrain.cohort.ledger import Branch, flow_table, ledger_table
 from socibrain.errors import Faults
-from socibrain.sources.study import Study
 
 
 @dataclass(frozen=True)
@@ -31,26 +30,22 @@ class Audit:
 
 
 def audit_study(
-    study: Study, *, version: str, workers: int, done: Callable[[int, int], None]
-) -> tuple[Audit, Gathered]:
-    """Look at everything the study names, half collected or whole.
+    gathered: Gathered, faults: Faults, *, version: str, workers: int, done: Callable[[int, int], None]
+) -> Audit:
+    """Look at everything a gathered study names, half collected or whole.
 
-    Grave faults are on record in ``problems``, not raised, unless nobody can be read at all
-    (`DataRefused`).
+    ``faults`` holds what gathering found; grave ones are on record in ``problems``, not raised.
     """
-    faults = Faults()
-    gathered = gather(study, faults)
     brains = read_brains(gathered, version=version, memory=None, workers=workers, measuring=False, done=done)
     branches, leavings = stand(gathered, brains)
     found = [*faults, *(fault for brain in brains for fault in brain.faults)]
-    audit = Audit(
+    return Audit(
         flow=flow_table(branches, leavings),
         ledger=ledger_table(leavings),
         problems=problem_table(found),
         sites=_sites(gathered, branches),
         names=_names(gathered.tally),
     )
-    return audit, gathered
 
 
 def _sites(gathered: Gathered, branches: list[Branch]) -> pd.DataFrame:

@@ -60,8 +60,9 @@ def _of_scans(name: str) -> Column:
 
 def _measured(name: str, origin: str, measure: str) -> Column:
     passport = all_measures()[measure]
+    label = f"{passport.label} ({origin.replace('_', ' ')})"
     return Column(
-        name, f"{passport.label} ({origin.replace('_', ' ')})", passport.says, passport.unit, passport.reading,
+        name, label, passport.says, passport.unit, passport.reading,
         passport.undefined, passport.source, measure, origin, passport.low, passport.high,
     )  # fmt: skip
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import os
 import platform
 import time
 from collections.abc import Iterator
@@ -11,6 +12,9 @@ from datetime import UTC, datetime
 from importlib.metadata import version as installed
 from pathlib import Path
 
+from socibrain.cohort.gather import Gathered, input_files
+from socibrain.plan.planfile import Plan
+from socibrain.run.folder import RunFolder
 from socibrain.tasks.finished import file_digest
 
 VERSION = installed("socibrain")
@@ -32,11 +36,40 @@ class Clock:
         self.seconds[name] = round(time.perf_counter() - start, 3)
 
 
-def packages() -> dict[str, str]:
-    """Versions of what computes."""
-    return {"python": platform.python_version()} | {name: installed(name) for name in COMPUTES_WITH}
+def make_record(
+    gathered: Gathered, plan: Plan | None, clock: Clock, folder: RunFolder | None
+) -> dict[str, object]:
+    """The record of a run.
 
+    Paths of study and plan are from the run folder where there is one, so that folder and project
+    can be moved together; inputs are named as the study writes them, with their SHA-256.
+    """
+    study = gathered.study
 
-def digests(folder: Path, files: list[str]) -> dict[str, str]:
-    """SHA-256 of each file, by its path as the study writes it."""
-    return {name: file_digest(folder / name) for name in files if (folder / name).is_file()}
+    def seen_from_run(path: Path) -> str:
+        return Path(os.path.relpath(path, folder.path) if folder else path).as_posix()
+
+    record: dict[str, object] = {
+        "socibrain": VERSION,
+        "packages": {"python": platform.python_version()} | {name: installed(name) for name in COMPUTES_WITH},
+        "study": study.says.study,
+        "study_title": study.says.title,
+        "study_file": seen_from_run(study.document.path),
+        "study_digest": file_digest(study.document.path),
+        "study_says": study.says.model_dump(mode="json"),
+        "inputs": {
+            name: file_digest(study.path(name))
+            for name in input_files(gathered)
+            if study.path(name).is_file()
+        },
+        "started": clock.started,
+        "seconds": clock.seconds,
+    }
+    if plan:
+        record |= {
+            "plan": plan.says.plan,
+            "plan_file": seen_from_run(plan.document.path),
+            "plan_digest": file_digest(plan.document.path),
+            "plan_says": plan.says.model_dump(mode="json"),
+        }
+    return record

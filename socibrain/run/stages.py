@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import json
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from pathlib import Path
@@ -13,10 +12,10 @@ from joblib import cpu_count
 from socibrain.cohort.assemble import measure_study
 from socibrain.cohort.audit import Audit, audit_study
 from socibrain.cohort.columns import numeric_columns
-from socibrain.cohort.gather import gather, input_files, named_tables
+from socibrain.cohort.gather import Gathered, gather, named_tables
 from socibrain.cohort.table import Cohort
 from socibrain.documents import nearest
-from socibrain.errors import DataRefused, DocumentRefused, Fault, Faults, Refusal
+from socibrain.errors import DataRefused, DocumentRefused, Fault, Faults
 from socibrain.link.answer import link as answer_hypotheses
 from socibrain.link.finding import Findings
 from socibrain.measures.catalogue import all_measures
@@ -24,20 +23,14 @@ from socibrain.plan.planfile import Plan, check_columns, read_plan
 from socibrain.report.material import ReportInput
 from socibrain.report.page import render_report
 from socibrain.run import outputs
+from socibrain.run.again import plan_of
 from socibrain.run.folder import RunFolder
-from socibrain.run.record import VERSION, Clock, digests, packages
+from socibrain.run.record import VERSION, Clock, make_record
 from socibrain.sources.begin import begin as first_study_file
 from socibrain.sources.decisions import DECISIONS, write_suggestions
 from socibrain.sources.study import Study, read_study
-from socibrain.tasks.finished import file_digest
 
 Tell = Callable[[str], None]
-
-
-class RunChanged(Refusal):
-    """What a run was made from is no longer what lies there."""
-
-    exit_code = 6
 
 
 @dataclass(frozen=True)
@@ -110,12 +103,14 @@ def audit(
     """What a study holds, what was left out of it and why; written to ``out`` when given."""
     study = study if isinstance(study, Study) else read_study(study)
     folder = _opened(out, study)
-    found, gathered = audit_study(study, version=VERSION, workers=workers or cpu_count(), done=_teller(tell))
+    faults = Faults()
+    gathered = gather(study, faults)
+    found = audit_study(gathered, faults, version=VERSION, workers=workers or cpu_count(), done=_teller(tell))
     if folder:
         folder.write(outputs.of_audit(found))
-        faults = Faults()
-        added = write_suggestions(study, gathered.open_names, faults)
-        faults.refuse_if_grave()
+        unwritable = Faults()
+        added = write_suggestions(study, gathered.open_names, unwritable)
+        unwritable.refuse_if_grave()
         if names := len(gathered.open_names):
             tell(f"{names} names wait for a decision in {study.path(DECISIONS)} ({added} new)")
     return found
@@ -130,10 +125,11 @@ def measure(
 ) -> Cohort:
     """Networks to numbers for everyone in a study; tables written to ``out`` when given."""
     study = study if isinstance(study, Study) else read_study(study)
-    folder, clock = _opened(out, study), Clock()
-    cohort = _measured(study, folder, workers, tell, clock)
+    folder, clock, faults = _opened(out, study), Clock(), Faults()
+    gathered = gather(study, faults)
+    cohort = _measured(gathered, faults, folder=folder, workers=workers, tell=tell, clock=clock)
     if folder:
-        record = _record(study, None, clock)
+        record = make_record(gathered, None, clock, folder)
         folder.write(outputs.with_record(outputs.of_cohort(cohort), record))
     return cohort
 
@@ -148,14 +144,15 @@ def link(
     """Answer the hypotheses of a plan; everything written to ``out`` when given."""
     plan_read = read_plan(plan)
     study = _study_of(plan_read)
-    folder, clock = _opened(out, study), Clock()
+    folder, clock, faults = _opened(out, study), Clock(), Faults()
     options = plan_read.options(study.says.visits)
-    check_columns(plan_read, numeric_columns(gather(study, Faults())))
-    cohort = _measured(study, folder, workers, tell, clock)
+    gathered = gather(study, faults)
+    check_columns(plan_read, numeric_columns(gathered))
+    cohort = _measured(gathered, faults, folder=folder, workers=workers, tell=tell, clock=clock)
     tell(f"testing {len(plan_read.says.hypotheses)} hypotheses with {options.shuffles} shuffles")
     with clock.stage("link"):
         findings = answer_hypotheses(cohort, plan_read.says.hypotheses, options)
-    record = _record(study, plan_read, clock)
+    record = make_record(gathered, plan_read, clock, folder)
     if folder:
         files = outputs.of_cohort(cohort, findings) | outputs.of_findings(findings)
         folder.write(outputs.with_record(files, record))
@@ -184,44 +181,7 @@ def report_run(run: str | Path, *, workers: int | None = None, tell: Tell = sile
     version is no longer what the run was made from.
     """
     run = Path(run)
-    recorded = run / "run.json"
-    if not recorded.is_file():
-        raise DataRefused(
-            Fault(
-                str(run),
-                "",
-                "no-run",
-                "there is no finished run here",
-                "run `socibrain link PLAN --out` first",
-            )
-        )
-    try:
-        record = json.loads(recorded.read_text(encoding="utf-8"))
-    except ValueError:
-        record = None
-    if not isinstance(record, dict) or not {"socibrain", "study_file", "study_digest"} <= record.keys():
-        raise DataRefused(
-            Fault(
-                str(recorded),
-                "",
-                "no-record",
-                "is not the record of a run",
-                "answer the plan anew: socibrain link",
-            )
-        )
-    if not record.get("plan_file"):
-        raise DataRefused(
-            Fault(
-                str(recorded),
-                "",
-                "no-plan",
-                "this run measured, but answered no plan",
-                "run `socibrain link`",
-            )
-        )
-    plan = Path(record["plan_file"])
-    _refuse_changes(record, recorded, plan)
-    answer = link(plan, workers=workers, tell=tell, out=run)
+    answer = link(plan_of(run), workers=workers, tell=tell, out=run)
     return report(answer, run / "report.html")
 
 
@@ -265,11 +225,18 @@ def _opened(out: str | Path | None, study: Study) -> RunFolder | None:
 
 
 def _measured(
-    study: Study, folder: RunFolder | None, workers: int | None, tell: Tell, clock: Clock
+    gathered: Gathered,
+    faults: Faults,
+    *,
+    folder: RunFolder | None,
+    workers: int | None,
+    tell: Tell,
+    clock: Clock,
 ) -> Cohort:
     with clock.stage("measure"):
         return measure_study(
-            study,
+            gathered,
+            faults,
             version=VERSION,
             memory=folder.memory if folder else None,
             workers=workers or cpu_count(),
@@ -297,45 +264,3 @@ def _study_of(plan: Plan) -> Study:
             plan.document.fault(("study",), "missing-file", "there is no such study file", "correct the path")
         )
     return read_study(plan.study_path)
-
-
-def _record(study: Study, plan: Plan | None, clock: Clock) -> dict[str, object]:
-    record: dict[str, object] = {
-        "socibrain": VERSION,
-        "packages": packages(),
-        "study": study.says.study,
-        "study_title": study.says.title,
-        "study_file": study.document.path.as_posix(),
-        "study_digest": file_digest(study.document.path),
-        "study_says": study.says.model_dump(mode="json"),
-        "inputs": digests(study.folder, input_files(gather(study, Faults()))),
-        "started": clock.started,
-        "seconds": clock.seconds,
-    }
-    if plan:
-        record |= {
-            "plan": plan.says.plan,
-            "plan_file": plan.document.path.as_posix(),
-            "plan_digest": file_digest(plan.document.path),
-            "plan_says": plan.says.model_dump(mode="json"),
-        }
-    return record
-
-
-def _refuse_changes(record: dict[str, object], recorded: Path, plan: Path) -> None:
-    """Refuse when anything the run was made from has changed since."""
-    study_file = Path(str(record["study_file"]))
-    now = {str(plan): record["plan_digest"], str(study_file): record["study_digest"]}
-    inputs = record["inputs"]
-    if isinstance(inputs, dict):
-        now |= {str(study_file.parent / name): digest for name, digest in inputs.items()}
-    changed = [
-        name for name, was in now.items() if not Path(name).is_file() or file_digest(Path(name)) != was
-    ]
-    mend = "answer the plan anew: socibrain link"
-    faults = [Fault(name, "", "changed", f"is not what {recorded} was made from", mend) for name in changed]
-    if record["socibrain"] != VERSION:
-        found = f"was made by version {record['socibrain']}, this is {VERSION}"
-        faults.append(Fault(str(recorded), "", "version", found, mend))
-    if faults:
-        raise RunChanged(*faults)
