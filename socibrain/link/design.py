@@ -17,6 +17,8 @@ Array = NDArray[np.float64]
 Codes = NDArray[np.intp]
 NOTHING = 1e-9
 """What is left of a column, as a share of it, when rounding is all that is left."""
+FEW_SITES = 6
+"""Below this many sites a variance between them is hardly known: common practice."""
 
 
 @dataclass(frozen=True)
@@ -101,6 +103,10 @@ def _design(table: pd.DataFrame, hypothesis: Hypothesis, sites: Codes, options: 
         between, context = np.eye(n_sites)[sites], False
     else:
         between, context = _between(means, hypothesis.predictor, sites, notes)
+        if 1 < n_sites < FEW_SITES:
+            notes.append(
+                f"{n_sites} sites tell little of the variance between sites: fixed sites are advised"
+            )
     alone = int((np.bincount(sites) == 1).sum())
     if alone:
         notes.append(

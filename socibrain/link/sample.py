@@ -34,13 +34,17 @@ class Sample:
 def draw_sample(cohort: Cohort, hypotheses: Sequence[Hypothesis], *, visit: str, family: str) -> Sample:
     """The people complete in all columns of all ``hypotheses`` at one visit.
 
-    People without any scan count at every visit, with no brain measures.
+    People without any scan count at every visit, with no brain measures.  Where no column comes
+    from a scan the visit does not matter, and people scanned at another visit count too.
     Raises `DocumentRefused` with every column that the cohort does not have.
     """
     columns = list(dict.fromkeys(name for h in hypotheses for name in (h.outcome, h.predictor, *h.adjust)))
     _refuse_unknown(cohort, columns)
     everyone = cohort.persons.drop_duplicates("person")[["person", "site"]]
-    rows = cohort.persons[cohort.persons["visit"].isin([visit, ""])]
+    if any(_from_a_scan(cohort, name) for name in columns):
+        rows = cohort.persons[cohort.persons["visit"].isin([visit, ""])]
+    else:
+        rows = cohort.persons.drop_duplicates("person")
     missing = pd.DataFrame({name: _missing(rows[name]) for name in columns}, index=rows.index)
     lost = missing.any(axis=1) | rows["site"].isna()
     reasons = dict.fromkeys(everyone["person"], f"no usable scan at visit '{visit}'")
@@ -80,7 +84,7 @@ def _why(cohort: Cohort, name: str, person: str, visit: str) -> str:
     about = cohort.columns.get(name)
     if about is None or not about.origin:
         return f"'{name}': missing"
-    side = "social" if about.origin in {network.question for network in cohort.social} else "brain"
+    side = "brain" if _from_a_scan(cohort, name) else "social"
     ledger = cohort.ledger
     others = {column.origin for column in cohort.columns.values()} - {about.origin, ""}
     elsewhere = ledger["stage"].str.endswith(tuple(f" in {other}" for other in others))
@@ -88,6 +92,12 @@ def _why(cohort: Cohort, name: str, person: str, visit: str) -> str:
     mine &= ~elsewhere.astype(bool)
     told = list(dict.fromkeys(ledger.loc[mine, "reason"]))
     return ", ".join(told) if told else f"'{name}': undefined ({about.undefined})"
+
+
+def _from_a_scan(cohort: Cohort, name: str) -> bool:
+    """Whether the column differs between visits: it comes neither from a question nor with the person."""
+    origin = cohort.columns[name].origin if name in cohort.columns else ""
+    return origin not in {"", *(network.question for network in cohort.social)}
 
 
 def _refuse_unknown(cohort: Cohort, columns: Sequence[str]) -> None:

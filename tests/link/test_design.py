@@ -54,6 +54,7 @@ def test_the_parts_of_split_columns_are_orthogonal() -> None:
     assert design.notes == (
         "'sex' is coded against 'woman'",
         "site means of 'other' were dropped: 5 sites cannot carry them",
+        "5 sites tell little of the variance between sites: fixed sites are advised",
     )
 
 
@@ -81,6 +82,7 @@ def test_columns_that_add_nothing_are_dropped_and_said() -> None:
         "'size' does not vary within sites: only its site means adjust",
         "site means of 'twice' follow from the others and were dropped",
         "site means of 'balanced' are all the same and were dropped",
+        "5 sites tell little of the variance between sites: fixed sites are advised",
     )
 
 
@@ -90,7 +92,12 @@ def test_one_site_and_two_sites_have_no_site_means() -> None:
     assert not one.context
     two = design_of(made_persons(sites=(20, 9)), ask("y", "x"))
     assert two.between.shape == (29, 1)
-    assert two.notes == ("site means of 'x' were dropped: 2 sites cannot carry them",)
+    assert two.notes == (
+        "site means of 'x' were dropped: 2 sites cannot carry them",
+        "2 sites tell little of the variance between sites: fixed sites are advised",
+    )
+    assert design_of(made_persons(sites=(20, 9)), ask("y", "x"), "fixed").notes == ()
+    assert one.notes == design_of(made_persons(sites=(9,) * 6), ask("y", "x")).notes == ()
 
 
 def test_a_site_with_one_person_is_said() -> None:

@@ -1,5 +1,7 @@
 """Who is in a family's sample, and why the others are not."""
 
+from dataclasses import replace
+
 import numpy as np
 import pandas as pd
 import pytest
@@ -7,6 +9,7 @@ import pytest
 from socibrain.cohort.table import Column
 from socibrain.errors import DocumentRefused
 from socibrain.link.sample import draw_sample
+from socibrain.networks.social import SocialNetwork
 from tests.link.made_cohorts import LEDGER, ask, cohort_of
 
 PERSONS = pd.DataFrame(
@@ -50,6 +53,16 @@ def test_everyone_is_in_or_has_a_reason() -> None:
 
 def test_people_without_a_scan_count_where_no_brain_is_asked_for() -> None:
     assert list(sample_of(ask("age", "advice.constraint")).table["person"]) == ["a", "c", "e", "f"]
+
+
+def test_the_visit_does_not_matter_where_nothing_comes_from_a_scan() -> None:
+    nobody = np.zeros((0, 0), dtype=bool)
+    network = SocialNetwork("s", "advice", (), nobody, np.zeros(0, dtype=bool), (), "either")
+    columns = (column("rest.strength", "never"), column("advice.constraint", "no contacts"))
+    cohort = replace(cohort_of(PERSONS, columns=columns), social=(network,))
+    for asked, people in (("advice.constraint", "acdef"), ("rest.strength", "af")):
+        sample = draw_sample(cohort, [ask("age", asked)], visit="1", family="first")
+        assert "".join(sample.table["person"]) == people
 
 
 def test_another_visit_has_other_people() -> None:
