@@ -61,6 +61,11 @@ def pose(outcome: Array, within: Array, between: Array, sites: Codes) -> Problem
     A split column's two parts are orthogonal under every variance ratio.  So shuffling residuals
     within sites changes the fit through the within-site columns alone, and reaches the variance
     ratio only by the residual sum of squares within sites, one number.
+
+    Shuffling takes residuals of one site for exchangeable.  Skewed or heavy-tailed residuals and
+    sites of unequal spread do little harm; a spread that goes with the predictor does.  Measured
+    at nominal .05, 148 people in 12 sites, twice the spread where the predictor is 1: .09 when
+    that is three people in ten, .20 when it is one in twenty.
     """
     means = np.bincount(sites, outcome) / np.bincount(sites)
     deviation = outcome - means[sites]
