@@ -115,6 +115,7 @@ def test_cells_that_are_no_usable_number(study: MadeStudy, age: str) -> None:
 def test_a_site_of_one_person(study: MadeStudy) -> None:
     added("people.tsv", "z01\teast\tcrew\t30")(study)
     added("roster.tsv", "z01\teast\tZed\tyes")(study)
+    added("advice.tsv", "z01\t")(study)
     study.write("brain/z01.tsv", study.text("brain/n01.tsv"))
     assert study.run("link").code == 0
     (found,) = table(study, "findings").to_dict("records")
@@ -304,9 +305,8 @@ def test_names_that_wait_are_not_lost_when_they_cannot_be_written(study: MadeStu
 
 def test_a_missing_matrix_named_almost_right_is_pointed_out(study: MadeStudy) -> None:
     (study.folder / "brain/n03.tsv").rename(study.folder / "brain/N3.tsv")
-    told = study.run("measure")
-    assert "brain/N3.tsv  the people table has no 'N3'" in told.err
-    assert "is it 'n03'?" in told.err
+    message = ("brain/N3.tsv", "the people table has no 'N3'", "is it 'n03'?")
+    assert_told(study.run("measure"), 4, message)
 
 
 def test_a_file_name_that_is_no_text(study: MadeStudy) -> None:
@@ -315,7 +315,7 @@ def test_a_file_name_that_is_no_text(study: MadeStudy) -> None:
     except OSError:
         pytest.skip("this file system knows text only")
     told = study.run("audit")
-    assert told.code == 0
+    assert told.code == 4
     assert "the people table has no '\\udcff'" in told.err
 
 

@@ -63,7 +63,7 @@ def gather(study: Study, faults: Faults) -> Gathered:
     """
     people = read_people(study, faults)
     if people is None:
-        for file in named_tables(study):
+        for file in study.tables:
             read_text(study.path(file), file, faults)
         faults.refuse()
     left_out = read_exclusions(study, people, faults)
@@ -99,20 +99,8 @@ def input_files(gathered: Gathered) -> list[str]:
     """Every file that was read, as the study writes it, without repeats."""
     study = gathered.study
     sidecar = study.says.people.file.rsplit(".", 1)[0] + ".json"
-    files = [*named_tables(study), sidecar, DECISIONS]
+    files = [*study.tables, sidecar, DECISIONS]
     return list(dict.fromkeys([*files, *(matrix.file for matrix in gathered.matrices)]))
-
-
-def named_tables(study: Study) -> list[str]:
-    """Every table that the study names, without repeats."""
-    says, asked = study.says, study.says.questionnaire
-    files = [says.people.file, *(rule.file for rule in says.exclusions if rule.file)]
-    files += [part.file for part in (says.roster, says.regions) if part]
-    if asked:
-        files += [question.file for question in asked.questions.values()]
-        files += [asked.answered.file] if asked.answered else []
-        files += [asked.aliases] if asked.aliases else []
-    return list(dict.fromkeys(files))
 
 
 def _note_absent(study: Study, people: PeopleTable, roster: tuple[RosterEntry, ...], faults: Faults) -> None:

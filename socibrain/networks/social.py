@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -78,8 +78,9 @@ def build_social_networks(
 ) -> SocialReading:
     """One network per question and site over everyone on the roster except ``leave_out``.
 
-    ``answered`` holds those who answered by the status table; who is in it and has no row named
-    nobody, and answers of people outside it are set aside.  Without a status table (None) whoever
+    ``answered`` holds those who answered by the status table; who is in it and has no name there named
+    nobody (who is in it and has no row for any question is a grave fault: the answers may be lost),
+    and answers of people outside it are set aside.  Without a status table (None) whoever
     has a row for the question, even an empty one, answered it.  ``names`` is built on the whole
     roster, so that a person left out is recognised and nobody else is taken for them.
     Grave fault: a chooser who is not on the roster.
@@ -92,6 +93,8 @@ def build_social_networks(
     networks: list[SocialNetwork] = []
     rows: list[dict[str, object]] = []
     waiting: dict[tuple[str, str], OpenName] = {}
+    if answers and answered is not None:
+        _refuse_lost_answers(answers, [p for p in kept if p in answered and p not in elsewhere], faults)
     for one in answers:
         if asked is None:
             raise ValueError("this study asks no questions")
@@ -147,6 +150,16 @@ def _refuse_strangers(answers: Answers, homes: Mapping[str, str], faults: Faults
                        )  # fmt: skip
 
 
+def _refuse_lost_answers(answers: Sequence[Answers], people: Iterable[str], faults: Faults) -> None:
+    """People who answered, and of whom no file has a row: absent is not the same as nobody."""
+    files = " or ".join(dict.fromkeys(one.file for one in answers))
+    if not all(one.first_line for one in answers):
+        return
+    for person in people:
+        faults.add(files, "", "lost-answers", f"'{person}' answered by the status table and has no row",
+                   "add their answers, an empty row if they named nobody, or correct the status")  # fmt: skip
+
+
 def _note_silence(
     read: Iterable[Read],
     answers: Answers,
@@ -167,7 +180,7 @@ def _note_silence(
     for person in kept:
         line = answers.first_line.get(person)
         place = "" if line is None else f"line {line}"
-        if answered is not None and person in answered and person not in wrote:
+        if answered is not None and person in answered & elsewhere and person not in wrote:
             faults.add(answers.file, place, "gave-nothing",
                        f"'{person}' answered by the status table and named nobody here; taken as such",
                        "correct the status if the answers were lost", grave=False)  # fmt: skip

@@ -12,7 +12,7 @@ from joblib import cpu_count
 from socibrain.cohort.assemble import measure_study
 from socibrain.cohort.audit import Audit, audit_study
 from socibrain.cohort.columns import numeric_columns
-from socibrain.cohort.gather import Gathered, gather, named_tables
+from socibrain.cohort.gather import Gathered, gather
 from socibrain.cohort.table import Cohort
 from socibrain.documents import nearest
 from socibrain.errors import DataRefused, DocumentRefused, Fault, Faults
@@ -208,7 +208,7 @@ def _opened(out: str | Path | None, study: Study) -> RunFolder | None:
     """The run folder, shown to be writable and to hold no table of the study that could be overwritten."""
     if out is None:
         return None
-    tables = [study.document.path, *(study.path(file) for file in named_tables(study))]
+    tables = [study.document.path, *(study.path(file) for file in study.tables)]
     if Path(out).resolve() in {table.resolve().parent for table in tables}:
         raise DataRefused(
             Fault(

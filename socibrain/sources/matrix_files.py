@@ -23,28 +23,47 @@ def find_matrices(
     """The files of one brain input, in the order of ``ids`` and then of the declared visits.
 
     The declared pattern is filled with every known id (exactly as written) and every declared
-    visit.  A person without a file is not a fault.  Files that fit the pattern for nobody known,
-    or for no declared visit, are put on record with the id that was probably meant; finding no
-    file at all is grave when some are ``expected``.  Where the pattern ends in ``_relmat.tsv`` the
-    entities of a file's name may stand in any order, and ``seg-`` is the same as ``atlas-``.
+    visit.  A person without a file is not a fault.  A file that fits the pattern for nobody known is
+    a grave fault that names the id probably meant, unless it is another input's or a table of the
+    study; one of no declared visit is put on record.  Finding no file at all is grave when some are
+    ``expected``.  Where the pattern ends in ``_relmat.tsv`` the entities of a file's name may stand
+    in any order, and ``seg-`` is the same as ``atlas-``.
     """
     declared = study.says.brain[source_name].files
-    pattern = _one_spelling(declared) if declared.endswith(RELATION) else declared
     visits = study.says.visits or ("",)
-    lying = _lying(study, pattern, faults)
-    found = []
-    for person in ids:
-        for visit in visits:
-            file = lying.pop(_filled(pattern, person, visit), None)
-            if file is not None:
-                found.append(MatrixFile(source_name, person, visit, file))
-    _report_strays(lying, pattern, ids, visits, faults)
+    found, strays = _sorted_out(study, source_name, ids, faults)
+    others = {*study.tables}
+    for other in study.says.brain:
+        if other != source_name:
+            others |= {matrix.file for matrix in _sorted_out(study, other, ids, Faults())[0]}
+    strays = {arranged: file for arranged, file in strays.items() if file not in others}
+    _report_strays(strays, _pattern(study, source_name), ids, visits, faults)
     if not found:
         wanted = _filled(declared, ids[0] if ids else "ID", visits[0])
         faults.add(declared, "", "no-matrices", f"no file of brain input '{source_name}' was found",
                    f"put them where the pattern says, for example {wanted}, or correct `files:`",
                    grave=expected)  # fmt: skip
-    return tuple(found)
+    return found
+
+
+def _sorted_out(
+    study: Study, source_name: str, ids: Sequence[str], faults: Faults
+) -> tuple[tuple[MatrixFile, ...], dict[str, str]]:
+    """Files of known people and visits, and the others that fit the pattern (arranged -> path)."""
+    pattern = _pattern(study, source_name)
+    lying = _lying(study, pattern, faults)
+    found = []
+    for person in ids:
+        for visit in study.says.visits or ("",):
+            file = lying.pop(_filled(pattern, person, visit), None)
+            if file is not None:
+                found.append(MatrixFile(source_name, person, visit, file))
+    return tuple(found), lying
+
+
+def _pattern(study: Study, source_name: str) -> str:
+    declared = study.says.brain[source_name].files
+    return _one_spelling(declared) if declared.endswith(RELATION) else declared
 
 
 def _filled(pattern: str, person: str, visit: str) -> str:
@@ -121,9 +140,10 @@ def _report_strays(
             mend = (
                 f"is it {meant}? write the id the same way in the people table, the pattern and the file"
                 if meant
-                else "add the person to the people table, or take the file away"
+                else "add the person to the people table (an exclusion rule can leave them out), "
+                "or take the file away"
             )
-            faults.add(file, "", "unknown-person", f"the people table has no '{person}'", mend, grave=False)
+            faults.add(file, "", "unknown-person", f"the people table has no '{person}'", mend)
 
 
 def _bare(person: str) -> str:

@@ -189,6 +189,18 @@ class Study:
         """The file that a path written in the study file means."""
         return self.folder / written
 
+    @property
+    def tables(self) -> tuple[str, ...]:
+        """Every table that the study file names, as written, without repeats."""
+        says, asked = self.says, self.says.questionnaire
+        files = [says.people.file, *(rule.file for rule in says.exclusions if rule.file)]
+        files += [part.file for part in (says.roster, says.regions) if part]
+        if asked:
+            files += [question.file for question in asked.questions.values()]
+            files += [asked.answered.file] if asked.answered else []
+            files += [asked.aliases] if asked.aliases else []
+        return tuple(dict.fromkeys(files))
+
 
 def read_study(path: str | Path) -> Study:
     """Read a study file.

@@ -85,7 +85,7 @@ def test_ids_that_nearly_fit_are_suggested_never_taken(
     found, faults = finder(pattern, [file, other], [known, "other"])
     assert found == [("other", "", other)]
     (fault,) = faults
-    assert (fault.file, fault.kind, fault.grave) == (file, "unknown-person", False)
+    assert (fault.file, fault.kind, fault.grave) == (file, "unknown-person", True)
     assert (f"is it {meant}?" in fault.mend) if meant else ("is it" not in fault.mend)
 
 
@@ -94,7 +94,7 @@ def test_a_visit_that_is_not_declared(finder: Finder) -> None:
     assert found == [("a", "1", "a_1.tsv")]
     assert [(fault.file, fault.kind, fault.grave) for fault in faults] == [
         ("a_3.tsv", "unknown-visit", False),
-        ("z_3.tsv", "unknown-person", False),
+        ("z_3.tsv", "unknown-person", True),
     ]
 
 
@@ -110,7 +110,7 @@ def test_nobody_known_is_grave_too(finder: Finder) -> None:
     found, faults = finder("{person}.tsv", ["a.tsv"], [])
     assert found == []
     assert [(fault.kind, fault.grave) for fault in faults] == [
-        ("unknown-person", False),
+        ("unknown-person", True),
         ("no-matrices", True),
     ]
 
@@ -181,3 +181,18 @@ def test_folders_above_and_absolute_patterns(finder: Finder, tmp_path: Path) -> 
     assert finder("./m/{person}.tsv", ["m/a.tsv"], ["a"])[0] == [("a", "", "./m/a.tsv")]
     there = f"{tmp_path}/m/{{person}}.tsv"
     assert finder(there, ["m/a.tsv"], ["a"])[0] == [("a", "", f"{tmp_path}/m/a.tsv")]
+
+
+def test_files_of_another_input_and_tables_belong_to_somebody(tmp_path: Path) -> None:
+    """``{person}.tsv`` fits ``a_structure.tsv`` and ``people.tsv`` as well."""
+    (tmp_path / "study.yaml").write_text(
+        "socibrain: 1\nstudy: two\ntitle: Two inputs\npeople: {file: people.tsv}\nbrain:\n"
+        "  rest: {files: '{person}.tsv', edges: correlation, negative: drop}\n"
+        "  structure: {files: '{person}_structure.tsv', edges: streamlines, negative: refuse}\n"
+    )
+    for name in ("people.tsv", "a.tsv", "a_structure.tsv", "b_structure.tsv"):
+        (tmp_path / name).write_text("1")
+    faults = Faults()
+    study = read_study(tmp_path / "study.yaml")
+    assert [matrix.file for matrix in find_matrices(study, "rest", ["a"], faults)] == ["a.tsv"]
+    assert [fault.file for fault in faults] == ["b_structure.tsv"]
