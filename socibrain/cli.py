@@ -183,7 +183,7 @@ def _json(tables: dict[str, pd.DataFrame]) -> None:
 
 
 def _print(title: str, table: pd.DataFrame) -> None:
-    shown = Table(title=title, title_justify="left", title_style="bold", box=box.SIMPLE_HEAD)
+    shown = Table(title=title, title_justify="left", title_style="bold", box=box.SIMPLE_HEAD, pad_edge=False)
     for name in table.columns:
         numeric = table[name].dtype.kind in "iuf"
         shown.add_column(str(name).replace("_", " "), justify="right" if numeric else "left")
