@@ -22,8 +22,10 @@ from socibrain.run import stages
 from socibrain.run.record import VERSION
 
 OUR_FAULT, DATA_REFUSED, SOME_FAILED, INTERRUPTED = 1, 4, 5, 130
+LEAST_WIDTH = 96
+"""Characters that the widest table needs; a narrower terminal breaks its lines instead of cutting cells."""
 aloud = Console(stderr=True, highlight=False, markup=False, emoji=False, soft_wrap=True)
-plain = Console(highlight=False, markup=False, emoji=False, soft_wrap=True)
+plain = Console(highlight=False, soft_wrap=True, width=max(LEAST_WIDTH, Console().width))
 
 as_json = click.option("--json", "as_json", is_flag=True, help="Write results to stdout as JSON.")
 out_folder = click.option(
@@ -64,6 +66,7 @@ def audit(study: Path, out: Path | None, workers: int | None, as_json: bool) -> 
     else:
         _print("Flow", found.flow)
         _print("Sites", found.sites)
+        click.echo(f"who is still to answer or to be scanned: {out / 'ledger.csv'}\n")
         if len(found.names):
             _print("What was written", found.names)
         if len(found.problems):
@@ -183,7 +186,9 @@ def _json(tables: dict[str, pd.DataFrame]) -> None:
 
 
 def _print(title: str, table: pd.DataFrame) -> None:
-    shown = Table(title=title, title_justify="left", title_style="bold", box=box.SIMPLE_HEAD, pad_edge=False)
+    shown = Table(
+        title=title, title_justify="left", title_style="bold", box=box.SIMPLE_HEAD, padding=(0, 1, 0, 0)
+    )
     for name in table.columns:
         numeric = table[name].dtype.kind in "iuf"
         shown.add_column(str(name).replace("_", " "), justify="right" if numeric else "left")
