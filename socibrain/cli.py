@@ -25,7 +25,9 @@ OUR_FAULT, DATA_REFUSED, SOME_FAILED, INTERRUPTED = 1, 4, 5, 130
 LEAST_WIDTH = 96
 """Characters that the widest table needs; a narrower terminal breaks its lines instead of cutting cells."""
 aloud = Console(stderr=True, highlight=False, markup=False, emoji=False, soft_wrap=True)
-plain = Console(highlight=False, soft_wrap=True, width=max(LEAST_WIDTH, Console().width))
+plain = Console(
+    highlight=False, markup=False, emoji=False, soft_wrap=True, width=max(LEAST_WIDTH, Console().width)
+)
 
 as_json = click.option("--json", "as_json", is_flag=True, help="Write results to stdout as JSON.")
 out_folder = click.option(
