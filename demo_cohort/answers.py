@@ -89,7 +89,7 @@ def write_answers(stations: list[Station], question: str, seed: int) -> Written:
 def _choices(station: Station, question: str, draw: np.random.Generator) -> list[list[int]]:
     if question == "advice":
         surely = np.outer(station.core, station.core)
-        return name_ties(station.advice, surely=surely, maybe=0.6, draw=draw)
+        return name_ties(station.advice, surely=surely, maybe=0.85, draw=draw)
     nowhere = np.zeros_like(station.company)
     return name_ties(station.company, surely=nowhere, maybe=0.75, draw=draw)
 

@@ -12,9 +12,9 @@ from demo_cohort.ties import Station
 from demo_cohort.words import REGIONS_IN_SYSTEM, SYSTEMS
 from socibrain.streams import stream
 
-SPREAD_ON_CONSTRAINT = -0.42
+SPREAD_ON_CONSTRAINT = -0.25
 """Planted: evenness of a brain's ties over systems, per within-station SD of constraint."""
-CONTRAST_ON_CORE = -0.75
+CONTRAST_ON_CORE = -0.85
 """Planted: how clearly systems stand out in members of the inner circle, against everyone else."""
 CONTRAST_ON_AGE = -0.20
 STATION_SD = 0.35

@@ -14,6 +14,12 @@ from socibrain.streams import stream
 CAP = 6
 WITHOUT_CORE = ("Skelmarra", "Ashvoren")
 """Stations where no inner circle is planted."""
+CORE_IN_SMALL, CORE_IN_LARGE, LARGE = 6, 7, 26
+"""Size of an inner circle, in stations of fewer than 26 crew and of 26 or more."""
+AROUND_CORE = (3, 4)
+"""Fewest and most ties of an inner circle's member to others when the circle is made."""
+WANTED = 5
+"""Ties that others want in stations with an inner circle; they may come to have one more."""
 
 
 @dataclass(frozen=True)
@@ -47,7 +53,7 @@ def _station(name: str, crew: list[Person], seed: int) -> Station:
     if name not in WITHOUT_CORE:
         years = np.array([person.years for person in crew], dtype=float)
         standing = 0.5 * (years - years.mean()) / years.std() + draw.standard_normal(n)
-        core[np.argsort(-standing)[: 5 if n < 26 else 6]] = True
+        core[np.argsort(-standing)[: CORE_IN_SMALL if n < LARGE else CORE_IN_LARGE]] = True
     advice = _advice(core, watch, draw)
     graph = igraph.Graph.Adjacency(advice.astype(int).tolist(), mode="undirected")
     return Station(
@@ -64,24 +70,26 @@ def _advice(core: np.ndarray, watch: np.ndarray, draw: np.random.Generator) -> n
     """An inner circle who all turn to each other, and watches of unequal openness around it.
 
     The circle has more ties inside than its degrees alone would bring: everyone in it knows
-    everyone in it, while most others keep to one of them and to their own watch.
+    everyone in it, while most others keep to one of them and to their own watch.  Around a circle
+    all others have nearly the same number of ties, so that nobody is halfway to belonging.
     """
     n = len(core)
     ties = np.outer(core, core) & ~np.eye(n, dtype=bool)
     outside = np.flatnonzero(~core)
-    # every member of the circle is turned to by four or five others
     for member in np.flatnonzero(core):
         wish = np.where(watch[outside] == watch[member], 3.0, 1.0) / (
             1.0 + 2.0 * ties[outside][:, core].sum(1)
         )
-        chosen = draw.choice(outside, size=int(draw.integers(4, 6)), replace=False, p=wish / wish.sum())
+        around = int(draw.integers(*AROUND_CORE, endpoint=True))
+        chosen = draw.choice(outside, size=around, replace=False, p=wish / wish.sum())
         ties[member, chosen] = ties[chosen, member] = True
     openness = draw.random(n) ** 2
-    wanted = draw.integers(4, 6, size=n) if core.any() else draw.integers(4, 10, size=n)
-    for person in draw.permutation(outside):
-        for _ in range(int(wanted[person])):
-            if ties[person].sum() >= wanted[person]:
-                break
+    wanted = np.full(n, WANTED) if core.any() else draw.integers(4, 10, size=n)
+    still = [int(person) for person in draw.permutation(outside)]
+    while still:  # who lacks most looks next
+        person = max(still, key=lambda each: wanted[each] - ties[each].sum())
+        still.remove(person)
+        while ties[person].sum() < wanted[person]:
             free = ~core & ~ties[person] & (ties.sum(axis=1) < wanted + 1)
             free[person] = False
             if not free.any():

@@ -24,7 +24,7 @@ def data_files(folder: Path) -> dict[str, bytes]:
     return {
         str(path.relative_to(folder)): path.read_bytes()
         for path in sorted(folder.rglob("*"))
-        if path.suffix in DATA
+        if path.suffix in DATA and "private" not in path.relative_to(folder).parts
     }
 
 
