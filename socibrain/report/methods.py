@@ -84,7 +84,9 @@ def _networks(material: ReportInput) -> str:
     told = [f"for “{question.replace('_', ' ')}”, {TIE_RULES[rule]}" for question, rule in rules.items()]
     social = (
         f"Positions were computed on the whole network of each site, including people without a scan, and "
-        f"then read off; {listed(told)}. Answers that were not given are unknown ties, never absent ones."
+        f"then read off; {listed(told)}. People who did not answer "
+        "have no value where it needs their own answers; in the positions of the others, ties that only "
+        "they could have reported are missing."
         if told
         else ""
     )

@@ -176,7 +176,7 @@ def numbers_of(finding: Finding, findings: Findings) -> list[tuple[str, str]]:
     if math.isfinite(finding.contextual):
         rows.append(
             (
-                "Slope of the site's mean, apart",
+                "Slope of the site's mean (not tested)",
                 f"{decimal(finding.contextual, 3)} (SE {decimal(finding.contextual_se, 3)})",
             )
         )
