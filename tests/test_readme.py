@@ -1,0 +1,86 @@
+"""README shows what the commands really print, and names no command or file that is not there."""
+
+from __future__ import annotations
+
+import re
+import shutil
+from pathlib import Path
+
+import pytest
+
+import socibrain
+from socibrain.cli import entry, main
+
+ROOT = Path(__file__).parents[1]
+README = (ROOT / "README.md").read_text(encoding="utf-8")
+
+
+@pytest.fixture(scope="module")
+def shown() -> dict[str, str]:
+    """What README says each command prints."""
+    found = {}
+    for block in re.findall(r"^```\n(\$ .*?)^```", README, re.MULTILINE | re.DOTALL):
+        for part in re.split(r"^\$ ", block, flags=re.MULTILINE)[1:]:
+            command, _, output = part.partition("\n")
+            found[command] = output
+    return found
+
+
+@pytest.fixture(scope="module")
+def folder(tmp_path_factory: pytest.TempPathFactory) -> Path:
+    """A folder where the commands run, with the demo cohort and one broken study file."""
+    folder = tmp_path_factory.mktemp("tour")
+    for name in ("demo_cohort", "analyses"):
+        shutil.copytree(ROOT / name, folder / name, ignore=shutil.ignore_patterns("private"))
+    study = (ROOT / "demo_cohort" / "study.yaml").read_text(encoding="utf-8")
+    (folder / "study.yaml").write_text(
+        study.replace("seed: 4127", "sede: 4127").replace("ties: both", "ties: mutual")
+    )
+    return folder
+
+
+def printed(
+    command: str, folder: Path, monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]
+) -> str:
+    monkeypatch.chdir(folder)
+    monkeypatch.setenv("COLUMNS", "100")
+    with pytest.raises(SystemExit):
+        main(command.split()[1:])
+    result = capsys.readouterr()
+    return result.out or result.err
+
+
+@pytest.mark.parametrize("command", re.findall(r"^\$ (socibrain .*)$", README, re.MULTILINE))
+def test_readme_shows_what_is_printed(
+    command: str,
+    shown: dict[str, str],
+    folder: Path,
+    monkeypatch: pytest.MonkeyPatch,
+    capsys: pytest.CaptureFixture[str],
+) -> None:
+    out = printed(command, folder, monkeypatch, capsys)
+    assert [line.rstrip() for line in out.splitlines() if line.strip()] == [
+        line.rstrip() for line in shown[command].splitlines() if line.strip()
+    ]
+
+
+def test_the_tour_has_its_commands(shown: dict[str, str]) -> None:
+    assert {command.split()[1] for command in shown} >= {"audit", "catalogue", "link", "report", "measure"}
+
+
+def test_every_command_named_is_there() -> None:
+    assert set(re.findall(r"socibrain (begin|audit|measure|link|report|catalogue)\b", README)) == set(
+        entry.commands
+    )
+
+
+def test_the_front_door_is_as_readme_says() -> None:
+    """These names outlive refactors."""
+    assert socibrain.__all__ == ["audit", "begin", "catalogue", "link", "measure", "read_study", "report"]
+    for name in set(re.findall(r"socibrain\.(\w+)\(", README)):
+        assert callable(getattr(socibrain, name))
+
+
+def test_every_file_named_is_there() -> None:
+    for name in re.findall(r"\((demo_cohort/[\w.]+)\)|`((?:demo_cohort|analyses)/[\w./]+)`", README):
+        assert (ROOT / "".join(name)).exists(), name
