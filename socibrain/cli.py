@@ -25,9 +25,6 @@ OUR_FAULT, DATA_REFUSED, SOME_FAILED, INTERRUPTED = 1, 4, 5, 130
 LEAST_WIDTH = 96
 """Characters that the widest table needs; a narrower terminal breaks its lines instead of cutting cells."""
 aloud = Console(stderr=True, highlight=False, markup=False, emoji=False, soft_wrap=True)
-plain = Console(
-    highlight=False, markup=False, emoji=False, soft_wrap=True, width=max(LEAST_WIDTH, Console().width)
-)
 
 as_json = click.option("--json", "as_json", is_flag=True, help="Write results to stdout as JSON.")
 out_folder = click.option(
@@ -196,7 +193,8 @@ def _print(title: str, table: pd.DataFrame) -> None:
         shown.add_column(str(name).replace("_", " "), justify="right" if numeric else "left")
     for row in table.itertuples(index=False):
         shown.add_row(*(_cell(value) for value in row))
-    plain.print(shown)
+    width = max(LEAST_WIDTH, aloud.width)
+    Console(markup=False, emoji=False, highlight=False, soft_wrap=True, width=width).print(shown)
 
 
 def _cell(value: object) -> str:
