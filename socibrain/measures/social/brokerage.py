@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from functools import partial
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -17,17 +19,23 @@ UNDEFINED = (
 )
 
 
-@measure(
-    label="Coordinator",
+role = partial(
+    measure,
     side="social",
     scale="person",
     unit="open paths (each triad twice where ties have no direction)",
     low=0,
     high=np.inf,
-    reading="higher = brokers more often between two people of one's own class",
     undefined=UNDEFINED,
     source=SOURCE,
     needs=("own answers", "roles"),
+)
+"""What the passports of all roles share."""
+
+
+@role(
+    label="Coordinator",
+    reading="higher = brokers more often between two people of one's own class",
 )
 def coordinator(site: SiteAtHand) -> Array:
     """Open paths through a person that lead between two people of one's own class.
@@ -43,17 +51,9 @@ def coordinator(site: SiteAtHand) -> Array:
     return _count(site, "coordinator")
 
 
-@measure(
+@role(
     label="Itinerant broker",
-    side="social",
-    scale="person",
-    unit="open paths (each triad twice where ties have no direction)",
-    low=0,
-    high=np.inf,
     reading="higher = brokers more often between two people of one other class",
-    undefined=UNDEFINED,
-    source=SOURCE,
-    needs=("own answers", "roles"),
 )
 def itinerant(site: SiteAtHand) -> Array:
     """Open paths through a person that lead between two people of one other class.
@@ -69,18 +69,10 @@ def itinerant(site: SiteAtHand) -> Array:
     return _count(site, "itinerant")
 
 
-@measure(
+@role(
     label="Gatekeeper",
-    side="social",
-    scale="person",
-    unit="open paths (each triad twice where ties have no direction)",
-    low=0,
-    high=np.inf,
     reading="higher = brokers more often from another class into one's own; where ties have no direction "
     "the same as representative",
-    undefined=UNDEFINED,
-    source=SOURCE,
-    needs=("own answers", "roles"),
 )
 def gatekeeper(site: SiteAtHand) -> Array:
     """Open paths through a person that lead from another class into one's own.
@@ -96,18 +88,10 @@ def gatekeeper(site: SiteAtHand) -> Array:
     return _count(site, "gatekeeper")
 
 
-@measure(
+@role(
     label="Representative",
-    side="social",
-    scale="person",
-    unit="open paths (each triad twice where ties have no direction)",
-    low=0,
-    high=np.inf,
     reading="higher = brokers more often from one's own class to another; where ties have no direction "
     "the same as gatekeeper",
-    undefined=UNDEFINED,
-    source=SOURCE,
-    needs=("own answers", "roles"),
 )
 def representative(site: SiteAtHand) -> Array:
     """Open paths through a person that lead from one's own class to another.
@@ -123,17 +107,9 @@ def representative(site: SiteAtHand) -> Array:
     return _count(site, "representative")
 
 
-@measure(
+@role(
     label="Liaison",
-    side="social",
-    scale="person",
-    unit="open paths (each triad twice where ties have no direction)",
-    low=0,
-    high=np.inf,
     reading="higher = brokers more often between two other classes",
-    undefined=UNDEFINED,
-    source=SOURCE,
-    needs=("own answers", "roles"),
 )
 def liaison(site: SiteAtHand) -> Array:
     """Open paths through a person that lead between two other classes.

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from functools import partial
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -17,17 +19,23 @@ UNDEFINED = (
 )
 
 
-@measure(
-    label="Coordinator, against chance",
+role = partial(
+    measure,
     side="social",
     scale="person",
     unit="SDs of the random networks",
     low=-np.inf,
     high=np.inf,
-    reading="higher = brokers between two people of one's own class more than by one's number of ties alone",
     undefined=UNDEFINED,
     source=SOURCE,
     needs=("own answers", "roles"),
+)
+"""What the passports of all roles share."""
+
+
+@role(
+    label="Coordinator, against chance",
+    reading="higher = brokers between two people of one's own class more than by one's number of ties alone",
 )
 def coordinator_against_chance(site: SiteAtHand) -> Array:
     """Excess of paths that lead between two people of one's own class over random networks.
@@ -46,17 +54,9 @@ def coordinator_against_chance(site: SiteAtHand) -> Array:
     return _against_chance(site, "coordinator")
 
 
-@measure(
+@role(
     label="Itinerant broker, against chance",
-    side="social",
-    scale="person",
-    unit="SDs of the random networks",
-    low=-np.inf,
-    high=np.inf,
     reading="higher = brokers between two people of one other class more than by one's number of ties alone",
-    undefined=UNDEFINED,
-    source=SOURCE,
-    needs=("own answers", "roles"),
 )
 def itinerant_against_chance(site: SiteAtHand) -> Array:
     """Excess of paths that lead between two people of one other class over random networks.
@@ -75,18 +75,10 @@ def itinerant_against_chance(site: SiteAtHand) -> Array:
     return _against_chance(site, "itinerant")
 
 
-@measure(
+@role(
     label="Gatekeeper, against chance",
-    side="social",
-    scale="person",
-    unit="SDs of the random networks",
-    low=-np.inf,
-    high=np.inf,
     reading="higher = brokers from another class into one's own more than by one's number of ties alone; "
     "where ties have no direction the same as representative_against_chance",
-    undefined=UNDEFINED,
-    source=SOURCE,
-    needs=("own answers", "roles"),
 )
 def gatekeeper_against_chance(site: SiteAtHand) -> Array:
     """Excess of paths that lead from another class into one's own over random networks.
@@ -105,18 +97,10 @@ def gatekeeper_against_chance(site: SiteAtHand) -> Array:
     return _against_chance(site, "gatekeeper")
 
 
-@measure(
+@role(
     label="Representative, against chance",
-    side="social",
-    scale="person",
-    unit="SDs of the random networks",
-    low=-np.inf,
-    high=np.inf,
     reading="higher = brokers from one's own class to another more than by one's number of ties alone; "
     "where ties have no direction the same as gatekeeper_against_chance",
-    undefined=UNDEFINED,
-    source=SOURCE,
-    needs=("own answers", "roles"),
 )
 def representative_against_chance(site: SiteAtHand) -> Array:
     """Excess of paths that lead from one's own class to another over random networks.
@@ -135,17 +119,9 @@ def representative_against_chance(site: SiteAtHand) -> Array:
     return _against_chance(site, "representative")
 
 
-@measure(
+@role(
     label="Liaison, against chance",
-    side="social",
-    scale="person",
-    unit="SDs of the random networks",
-    low=-np.inf,
-    high=np.inf,
     reading="higher = brokers between two other classes more than by one's number of ties alone",
-    undefined=UNDEFINED,
-    source=SOURCE,
-    needs=("own answers", "roles"),
 )
 def liaison_against_chance(site: SiteAtHand) -> Array:
     """Excess of paths that lead between two other classes over random networks.
