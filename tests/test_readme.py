@@ -10,6 +10,7 @@ import pytest
 
 import socibrain
 from socibrain.cli import entry, main
+from socibrain.plan.planfile import read_plan
 
 ROOT = Path(__file__).parents[1]
 README = (ROOT / "README.md").read_text(encoding="utf-8")
@@ -84,3 +85,10 @@ def test_the_front_door_is_as_readme_says() -> None:
 def test_every_file_named_is_there() -> None:
     for name in re.findall(r"\((demo_cohort/[\w.]+)\)|`((?:demo_cohort|analyses)/[\w./]+)`", README):
         assert (ROOT / "".join(name)).exists(), name
+
+
+def test_the_plan_of_the_readme_is_a_plan(folder: Path) -> None:
+    (text,) = re.findall(r"^```yaml\n(socibrain: 1\nplan: .*?)^```", README, re.MULTILINE | re.DOTALL)
+    (folder / "plan.yaml").write_text(text, encoding="utf-8")
+    (hypothesis,) = read_plan(folder / "plan.yaml").says.hypotheses
+    assert hypothesis.predictor == "advice.constraint"
