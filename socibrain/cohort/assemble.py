@@ -48,6 +48,9 @@ def measure_study(
         gathered.networks,
         seed=says.seed,
         own_answers_missing=asked.own_answers_missing if asked else "undefined",
+        version=version,
+        memory=memory,
+        workers=workers,
     )
     branches, leavings = stand(gathered, brains)
     usable = [brain for brain in brains if _key(brain) not in lost_scans(gathered, brains)]

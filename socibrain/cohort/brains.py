@@ -105,13 +105,8 @@ def _recall_or_measure(task: BrainTask, network: BrainNetwork) -> Arrays:
         [network.regions.names, network.regions.systems],
         options.model_dump(mode="json"),
     )
-    finished = Finished(task.memory)
     wanted = {each.name for scale in ("person", "region") for each in brain_measures(scale)} | {"partition"}
-    arrays = finished.recall(key)
-    if arrays is None or set(arrays) != wanted:
-        arrays = _measure(task, network)
-        finished.keep(key, arrays)
-    return arrays
+    return Finished(task.memory).once(key, wanted, lambda: _measure(task, network))
 
 
 def _measure(task: BrainTask, network: BrainNetwork) -> Arrays:

@@ -6,6 +6,7 @@ import hashlib
 import json
 import os
 import zipfile
+from collections.abc import Callable, Collection
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -38,6 +39,14 @@ class Finished:
     """A folder of finished tasks; each entry is written whole or not at all."""
 
     folder: Path
+
+    def once(self, key: str, wanted: Collection[str], make: Callable[[], Arrays]) -> Arrays:
+        """Arrays of these names: recalled when they are finished, else made and kept."""
+        arrays = self.recall(key)
+        if arrays is None or set(arrays) != set(wanted):
+            arrays = make()
+            self.keep(key, arrays)
+        return arrays
 
     def recall(self, key: str) -> Arrays | None:
         """Arrays of the finished task, or None when there is no sound entry."""
