@@ -17,6 +17,7 @@ from socibrain.cohort.positions import Positions, measure_positions
 from socibrain.cohort.standing import brain_branch, lost_scans, single_scans, social_branch
 from socibrain.cohort.table import Cohort
 from socibrain.errors import Fault, Faults
+from socibrain.networks.brain import refuse_odd_sizes
 
 PROBLEM_COLUMNS = ["file", "place", "kind", "found", "mend", "grave"]
 
@@ -40,7 +41,7 @@ def measure_study(
     brains = read_brains(
         gathered, version=version, memory=memory, workers=workers, measuring=measuring, done=done
     )
-    found = [*faults, *(fault for brain in brains for fault in brain.faults)]
+    found = all_faults(faults, brains)
     refuse_grave(found)
     says = gathered.study.says
     asked = says.questionnaire
@@ -86,6 +87,17 @@ def read_brains(
         for origin in gathered.matrices
     ]
     return measure_brains(tasks, workers=workers, done=lambda count: done(count, len(tasks)))
+
+
+def all_faults(gathering: Faults, brains: Sequence[MeasuredBrain]) -> list[Fault]:
+    """What gathering found, what is wrong with each matrix, and with their sizes beside each other."""
+    sizes: dict[str, list[tuple[str, int]]] = {}
+    for brain in brains:
+        if brain.region_names:
+            sizes.setdefault(brain.origin.source, []).append((brain.origin.file, len(brain.region_names)))
+    apart = Faults()
+    refuse_odd_sizes(sizes, apart)
+    return [*gathering, *(fault for brain in brains for fault in brain.faults), *apart]
 
 
 def stand(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[list[Branch], list[Leaving]]:

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 import pandas as pd
 
-from socibrain.cohort.assemble import problem_table, read_brains, stand
+from socibrain.cohort.assemble import all_faults, problem_table, read_brains, stand
 from socibrain.cohort.gather import Gathered
 from socibrain.cohort.ledger import Branch, flow_table, ledger_table
 from socibrain.errors import Faults
@@ -38,11 +38,10 @@ def audit_study(
     """
     brains = read_brains(gathered, version=version, memory=None, workers=workers, measuring=False, done=done)
     branches, leavings = stand(gathered, brains)
-    found = [*faults, *(fault for brain in brains for fault in brain.faults)]
     return Audit(
         flow=flow_table(branches, leavings),
         ledger=ledger_table(leavings),
-        problems=problem_table(found),
+        problems=problem_table(all_faults(faults, brains)),
         sites=_sites(gathered, branches),
         names=_names(gathered.tally),
     )

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections import Counter
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -80,12 +82,53 @@ def build_brain(
         return BrainReading(None)
     weights = (given + given.T) / 2
     mean_connectivity = float(weights.sum() / (n * (n - 1)))
+    _note_equal(weights, origin.file, faults)
     if not _within_range(weights, rules, origin.file, faults):
         return BrainReading(None)
     weights = np.abs(weights) if rules.negative == "absolute" else np.where(weights > 0, weights, 0.0)
     weights.setflags(write=False)
     network = BrainNetwork(origin.source, origin.person, origin.visit, table, weights, mean_connectivity)
     return BrainReading(network)
+
+
+def refuse_odd_sizes(sizes: Mapping[str, Sequence[tuple[str, int]]], faults: Faults) -> None:
+    """Add a grave fault for every file that differs in size from most of its brain input.
+
+    ``sizes`` pairs, by input, each readable file with its number of regions.  Of sizes that are
+    equally frequent, the first is taken for right.  Inputs that differ from the first one are
+    grave faults too: a study has one set of regions.
+
+    >>> faults = Faults()
+    >>> refuse_odd_sizes({"rest": [("a.tsv", 30), ("b.tsv", 29), ("c.tsv", 30)]}, faults)
+    >>> [(fault.file, fault.found) for fault in faults]
+    [('b.tsv', '29 regions; 2 other files of this input hold 30')]
+    """
+    usual = {
+        source: Counter(size for _, size in pairs).most_common(1)[0]
+        for source, pairs in sizes.items()
+        if pairs
+    }
+    for source, (size, times) in usual.items():
+        first, (wanted, _) = next(iter(usual.items()))
+        others = (
+            "1 other file of this input holds" if times == 1 else f"{times} other files of this input hold"
+        )
+        for file, found in sizes[source]:
+            if found != size:
+                faults.add(file, "", "odd-size", f"{found} regions; {others} {size}",
+                           "give all files of an input the same regions in the same order")  # fmt: skip
+        if size != wanted:
+            faults.add(sizes[source][0][0], "", "odd-size",
+                       f"input '{source}' has {size} regions where '{first}' has {wanted}",
+                       "describe matrices of other regions in a study file of their own")  # fmt: skip
+
+
+def _note_equal(weights: Array, file: str, faults: Faults) -> None:
+    """Say so when no pair of regions differs from any other: nobody measures that."""
+    pairs = weights[np.triu_indices(len(weights), 1)]
+    if pairs.size > 1 and (pairs == pairs[0]).all():
+        faults.add(file, "", "equal-weights", f"all weights are the same ({pairs[0]:.6g})",
+                   "compute the matrix again", grave=False)  # fmt: skip
 
 
 def _dead(weights: Array) -> NDArray[np.bool_]:

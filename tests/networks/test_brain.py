@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 
 from socibrain.documents import Document
 from socibrain.errors import Fault, Faults
-from socibrain.networks.brain import BrainNetwork, BrainReading, build_brain
+from socibrain.networks.brain import BrainNetwork, BrainReading, build_brain, refuse_odd_sizes
 from socibrain.sources.records import MatrixFile, MatrixRecord, RegionTable
 from socibrain.sources.study import Study, StudyFile
 
@@ -72,7 +72,7 @@ def test_a_sound_matrix_by_hand() -> None:
 
 
 def test_without_a_region_table_regions_are_numbered() -> None:
-    regions = network_of(build(np.ones((3, 3)))).regions
+    regions = network_of(build(random_weights(1, 3), negative="drop")).regions
     assert regions == RegionTable(("r1", "r2", "r3"), ("", "", ""))
 
 
@@ -167,7 +167,7 @@ def test_correlations_lie_within_one(edges: str) -> None:
 
 
 def test_a_file_that_names_the_regions_in_another_order_is_refused() -> None:
-    weights = np.ones((3, 3))
+    weights = np.array([[0.0, 1, 2], [1, 0, 3], [2, 3, 0]])
     network_of(build(weights, TABLE, names=TABLE.names))
     network_of(build(weights, TABLE, names=("1", "2", "3")))
     place, kind, found = fault_of(build(weights, TABLE, names=("bow", "mast", "keel")))
@@ -196,3 +196,28 @@ def test_relabelling_and_scale_carry_through(seed: int) -> None:
     moved = network_of(build(4 * given[np.ix_(order, order)], negative="drop"))
     assert (moved.weights == 4 * plain.weights[np.ix_(order, order)]).all()
     assert moved.mean_connectivity == pytest.approx(4 * plain.mean_connectivity, rel=1e-12)
+
+
+def test_weights_that_are_all_the_same_are_put_on_record() -> None:
+    reading, (fault,) = build([[0, 2, 2], [2, 0, 2], [2, 2, 0]])
+    assert reading.network is not None
+    assert not fault.grave
+    assert (fault.file, fault.kind, fault.found) == ("7.tsv", "equal-weights", "all weights are the same (2)")
+    assert build([[0, 2, 2], [2, 0, 1], [2, 1, 0]])[1] == []
+
+
+def test_every_file_of_another_size_is_refused_with_the_size_of_the_others() -> None:
+    faults = Faults()
+    files = [("a.tsv", 30), ("b.tsv", 29), ("c.tsv", 30), ("d.tsv", 31)]
+    refuse_odd_sizes({"rest": files, "story": [("e.tsv", 30)]}, faults)
+    assert [(fault.file, fault.found, fault.grave) for fault in faults] == [
+        ("b.tsv", "29 regions; 2 other files of this input hold 30", True),
+        ("d.tsv", "31 regions; 2 other files of this input hold 30", True),
+    ]
+
+
+def test_inputs_of_one_study_have_one_set_of_regions() -> None:
+    faults = Faults()
+    refuse_odd_sizes({"rest": [("a.tsv", 30)], "empty": [], "fibres": [("b.tsv", 60), ("c.tsv", 60)]}, faults)
+    (fault,) = faults
+    assert (fault.file, fault.found) == ("b.tsv", "input 'fibres' has 60 regions where 'rest' has 30")
