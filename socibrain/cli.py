@@ -20,6 +20,7 @@ from socibrain.errors import Fault, Refusal, told
 from socibrain.measures.catalogue import all_measures
 from socibrain.run import stages
 from socibrain.run.record import VERSION
+from socibrain.run.telling import finding_lines
 
 OUR_FAULT, DATA_REFUSED, SOME_FAILED, INTERRUPTED = 1, 4, 5, 130
 LEAST_WIDTH = 96
@@ -58,7 +59,7 @@ def begin(folder: Path) -> None:
 @as_json
 def audit(study: Path, out: Path | None, workers: int | None, as_json: bool) -> None:
     """Tell what was found, matched and left out, and why; works on half-collected data."""
-    out = out or stages.default_folder(study)
+    out = out or stages.study_folder(study)
     found = stages.audit(study, out=out, workers=workers, tell=_tell)
     if as_json:
         _json({"flow": found.flow, "sites": found.sites, "problems": found.problems, "ledger": found.ledger})
@@ -85,7 +86,7 @@ def audit(study: Path, out: Path | None, workers: int | None, as_json: bool) -> 
 @as_json
 def measure(study: Path, out: Path | None, workers: int | None, as_json: bool) -> None:
     """Turn networks into tidy tables with data dictionaries."""
-    out = out or stages.default_folder(study)
+    out = out or stages.study_folder(study)
     cohort = stages.measure(study, out=out, workers=workers, tell=_tell)
     _tell_lesser(cohort.problems, out)
     if as_json:
@@ -104,14 +105,14 @@ def measure(study: Path, out: Path | None, workers: int | None, as_json: bool) -
 @as_json
 def link(plan: Path, out: Path | None, workers: int | None, as_json: bool) -> None:
     """Answer the hypotheses of PLAN."""
-    out = out or stages.default_folder(plan)
+    out = out or stages.plan_folder(plan)
     answer = stages.link(plan, out=out, workers=workers, tell=_tell)
     _tell_lesser(answer.cohort.problems, out)
     if as_json:
         _json({"findings": answer.table})
     else:
-        for finding in answer.table.to_dict("records"):
-            _print_finding(finding, level=100 * (1 - answer.findings.options.alpha))
+        for finding in answer.findings.findings:
+            click.echo("\n  ".join(finding_lines(finding, alpha=answer.findings.options.alpha)))
         click.echo(f"{out / 'findings.csv'}")
     if answer.refusals:
         _tell(told(answer.refusals))
@@ -190,7 +191,7 @@ def _print(title: str, table: pd.DataFrame) -> None:
     )
     for name in table.columns:
         numeric = table[name].dtype.kind in "iuf"
-        shown.add_column(str(name).replace("_", " "), justify="right" if numeric else "left")
+        shown.add_column(str(name).replace("_", " "), justify="right" if numeric else "left", overflow="fold")
     for row in table.itertuples(index=False):
         shown.add_row(*(_cell(value) for value in row))
     width = max(LEAST_WIDTH, aloud.width)
@@ -201,22 +202,6 @@ def _cell(value: object) -> str:
     if isinstance(value, float):
         return "n/a" if math.isnan(value) else f"{value:.4g}"
     return str(value)
-
-
-def _print_finding(finding: dict[Any, Any], *, level: float) -> None:
-    """One row of findings.csv in three lines."""
-    click.echo(f"{finding['id']}: {finding['predictor']} -> {finding['outcome']}")
-    if finding["status"] in ("refused", "failed"):
-        click.echo(f"  {finding['status']}: {finding['reason']}")
-        return
-    click.echo(
-        f"  standardised slope {finding['estimate']:.3f} "
-        f"({level:g} % interval {finding['ci_low']:.3f} to {finding['ci_high']:.3f})"
-    )
-    click.echo(
-        f"  p {finding['p_permutation']:.4g}, in its family {finding['p_family']:.4g}; "
-        f"{finding['n']} people in {finding['n_sites']} sites; {finding['role']}, {finding['status']}"
-    )
 
 
 def _faults(problems: pd.DataFrame) -> list[Fault]:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+import shutil
 from pathlib import Path
 
 import numpy as np
@@ -165,13 +166,38 @@ def test_the_page_is_written_from_the_run(run: Path, answer: Answer) -> None:
     assert len(text) < 2_000_000
 
 
-def test_a_run_whose_inputs_changed_is_refused(
-    answer: Answer, run: Path, tmp_path: Path, capsys: pytest.CaptureFixture[str]
-) -> None:
-    record = json.loads((run / "run.json").read_text(encoding="utf-8"))
-    record["inputs"]["roster.tsv"] = "0" * 64
-    (tmp_path / "run.json").write_text(json.dumps(record), encoding="utf-8")
+def copied(run: Path, name: str) -> Path:
+    """The finished run in a folder beside it: paths in its record hold there too."""
+    return Path(shutil.copytree(run, run.parent / name))
+
+
+def refused(run: Path, capsys: pytest.CaptureFixture[str]) -> str:
+    before = {path.name: path.read_bytes() for path in run.iterdir() if path.is_file()}
     with pytest.raises(SystemExit) as left:
-        main(["report", str(tmp_path)])
+        main(["report", str(run)])
     assert left.value.code == 6
-    assert "roster.tsv" in capsys.readouterr().err
+    assert {path.name: path.read_bytes() for path in run.iterdir() if path.is_file()} == before
+    return capsys.readouterr().err
+
+
+def test_a_run_whose_inputs_changed_is_refused(
+    answer: Answer, run: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    changed = copied(run, "changed")
+    record = json.loads((changed / "run.json").read_text(encoding="utf-8"))
+    record["inputs"]["roster.tsv"] = "0" * 64
+    (changed / "run.json").write_text(json.dumps(record), encoding="utf-8")
+    told = refused(changed, capsys)
+    assert "roster.tsv  is not what" in told
+    assert told.count("is not what") == 1
+
+
+def test_a_run_that_had_other_inputs_is_refused(
+    answer: Answer, run: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    """As when a matrix came in, or names were decided, after the plan was answered."""
+    fewer = copied(run, "fewer")
+    record = json.loads((fewer / "run.json").read_text(encoding="utf-8"))
+    del record["inputs"]["aliases.tsv"]
+    (fewer / "run.json").write_text(json.dumps(record), encoding="utf-8")
+    assert "aliases.tsv  was not there when" in refused(fewer, capsys)

@@ -15,9 +15,9 @@ from socibrain.cohort.table import Cohort
 from socibrain.link.crosscheck import cross_check
 from socibrain.link.design import Design, Refused, make_designs
 from socibrain.link.families import Tail, extremeness, family_p, p_values, smallest_p
-from socibrain.link.finding import Finding, Findings
+from socibrain.link.finding import Check, Finding, Findings
 from socibrain.link.hypothesis import Hypothesis
-from socibrain.link.mixed import fit
+from socibrain.link.mixed import Fit, fit
 from socibrain.link.options import LinkOptions
 from socibrain.link.permute import Problem, distinct_arrangements, null_distribution, pose
 from socibrain.link.sample import LEFT_OUT, draw_sample
@@ -112,7 +112,12 @@ def _test(designs: Sequence[Design], family: str, options: LinkOptions) -> list[
         tested = _Tested(
             float(alone[place]), float(together[place]), float(smallest[place]), own, null.exhaustive
         )
-        answers.append(_found(design, problem, tested, options))
+        try:
+            answers.append(_found(design, problem, tested, options))
+        except np.linalg.LinAlgError as error:
+            reason = f"the fit broke down numerically ({error})"
+            n_sites = int(design.sites.max()) + 1
+            answers.append(Refused(design.hypothesis, reason, len(design.people), n_sites, "failed"))
     return answers
 
 
@@ -121,6 +126,7 @@ def _found(design: Design, problem: Problem, tested: _Tested, options: LinkOptio
     place = design.within.shape[1] - 1
     context = place + 2 if design.context else None
     estimate, error, df = (float(values[place]) for values in (fitted.coefficients, fitted.errors, fitted.df))
+    check, no_check = _checked(design, fitted)
     reach = float(stats.t.ppf(1 - options.alpha / 2, df)) * error
     predictor, others = design.within[:, -1], problem.basis[:, :-1]
     outcome_residual = problem.residual * design.outcome_sd
@@ -148,14 +154,22 @@ def _found(design: Design, problem: Problem, tested: _Tested, options: LinkOptio
         shuffles=len(tested.null),
         exhaustive=tested.exhaustive,
         smallest_p=tested.smallest_p,
-        check=cross_check(design, fitted),
+        check=check,
         null=tested.null,
         people=design.people,
         sites=design.site_names,
         outcome_residual=outcome_residual,
         predictor_residual=predictor_residual,
-        notes=design.notes,
+        notes=(*design.notes, *no_check),
     )
+
+
+def _checked(design: Design, fitted: Fit) -> tuple[Check | None, tuple[str, ...]]:
+    """The same fit by statsmodels, or the note that it could not be made."""
+    try:
+        return cross_check(design, fitted), ()
+    except np.linalg.LinAlgError as error:
+        return None, (f"statsmodels could not fit it again ({error})",)
 
 
 def _too_few(design: Design, smallest: float, arrangements: int, options: LinkOptions) -> Refused:
@@ -173,7 +187,7 @@ def _refused(refused: Refused) -> Finding:
     unknown: dict[str, Any] = dict.fromkeys(NUMBERS, np.nan)
     return Finding(
         hypothesis=refused.hypothesis,
-        status="refused",
+        status=refused.status,
         reason=refused.reason,
         n=refused.n,
         n_sites=refused.n_sites,

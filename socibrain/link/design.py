@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import Literal
 
 import numpy as np
 import pandas as pd
@@ -53,12 +54,13 @@ class Design:
 
 @dataclass(frozen=True)
 class Refused:
-    """A hypothesis that the sample cannot answer, and why."""
+    """A hypothesis that the sample cannot answer, or whose fit failed, and why."""
 
     hypothesis: Hypothesis
     reason: str
     n: int
     n_sites: int
+    status: Literal["refused", "failed"] = "refused"
 
 
 class _Unanswerable(Exception):

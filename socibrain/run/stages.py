@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 
 import pandas as pd
@@ -23,7 +23,7 @@ from socibrain.plan.planfile import Plan, check_columns, read_plan
 from socibrain.report.material import ReportInput
 from socibrain.report.page import render_report
 from socibrain.run import outputs
-from socibrain.run.again import plan_of
+from socibrain.run.again import read_record, refuse_other_inputs, unchanged_plan
 from socibrain.run.folder import RunFolder
 from socibrain.run.record import VERSION, Clock, make_record
 from socibrain.sources.begin import begin as first_study_file
@@ -66,16 +66,14 @@ def silent(_: str) -> None:
     """Tell nobody."""
 
 
-def default_folder(document: Path) -> Path:
-    """runs/<id> for a study or plan file, by the name it gives itself."""
-    text = document.read_text(encoding="utf-8-sig", errors="replace") if document.is_file() else ""
-    for line in text.splitlines():
-        key, _, value = line.partition(":")
-        if key in ("plan", "study") and value.strip():
-            name = value.split("#")[0].strip().strip("\"'")
-            if name.replace("-", "").replace("_", "").isalnum():
-                return Path("runs") / name
-    return Path("runs") / document.stem
+def study_folder(study: Path) -> Path:
+    """Where a study's results go unless told: runs/<study id>."""
+    return Path("runs") / read_study(study).says.study
+
+
+def plan_folder(plan: Path) -> Path:
+    """Where a plan's results go unless told: runs/<plan id>."""
+    return Path("runs") / read_plan(plan).says.plan
 
 
 def begin(folder: str | Path) -> Path:
@@ -144,19 +142,12 @@ def link(
     """Answer the hypotheses of a plan; everything written to ``out`` when given."""
     plan_read = read_plan(plan)
     study = _study_of(plan_read)
-    folder, clock, faults = _opened(out, study), Clock(), Faults()
-    options = plan_read.options(study.says.visits)
-    gathered = gather(study, faults)
-    check_columns(plan_read, numeric_columns(gathered))
-    cohort = _measured(gathered, faults, folder=folder, workers=workers, tell=tell, clock=clock)
-    tell(f"testing {len(plan_read.says.hypotheses)} hypotheses with {options.shuffles} shuffles")
-    with clock.stage("link"):
-        findings = answer_hypotheses(cohort, plan_read.says.hypotheses, options)
-    record = make_record(gathered, plan_read, clock, folder)
+    folder = _opened(out, study)
+    answer = _answer(plan_read, study, folder, workers=workers, tell=tell)
     if folder:
-        files = outputs.of_cohort(cohort, findings) | outputs.of_findings(findings)
-        folder.write(outputs.with_record(files, record))
-    return Answer(plan_read, cohort, findings, record)
+        files = outputs.of_cohort(answer.cohort, answer.findings) | outputs.of_findings(answer.findings)
+        folder.write(outputs.with_record(files, answer.record))
+    return answer
 
 
 def report(answer: Answer, path: str | Path) -> Path:
@@ -177,12 +168,16 @@ def report(answer: Answer, path: str | Path) -> Path:
 def report_run(run: str | Path, *, workers: int | None = None, tell: Tell = silent) -> Path:
     """Write report.html into the folder of a finished run; returns its path.
 
-    Finished work is recalled, not repeated.  Raises `RunChanged` when an input, the plan or the
-    version is no longer what the run was made from.
+    Measures are recalled and the hypotheses tested again, which gives the same numbers; nothing but
+    the page is written.  Raises `RunChanged` when the version, the study, the plan or any input is
+    no longer what the run was made from, or when there are inputs more or less.
     """
     run = Path(run)
-    answer = link(plan_of(run), workers=workers, tell=tell, out=run)
-    return report(answer, run / "report.html")
+    record = read_record(run)
+    plan = read_plan(unchanged_plan(run, record))
+    answer = _answer(plan, _study_of(plan), RunFolder(run), workers=workers, tell=tell)
+    refuse_other_inputs(run, record, answer.record)
+    return report(replace(answer, record=record), run / "report.html")
 
 
 def catalogue() -> pd.DataFrame:
@@ -202,6 +197,18 @@ def catalogue() -> pd.DataFrame:
 def no_such_measure(name: str) -> str:
     """What to say about a measure that does not exist."""
     return f"there is no measure '{name}'; {nearest(name, all_measures())}"
+
+
+def _answer(plan: Plan, study: Study, folder: RunFolder | None, *, workers: int | None, tell: Tell) -> Answer:
+    """The plan's hypotheses tested on the measured study; nothing is written but finished work."""
+    clock, faults = Clock(), Faults()
+    options = plan.options(study.says.visits)
+    gathered = gather(study, faults)
+    check_columns(plan, numeric_columns(gathered))
+    cohort = _measured(gathered, faults, folder=folder, workers=workers, tell=tell, clock=clock)
+    with clock.stage("link"):
+        findings = answer_hypotheses(cohort, plan.says.hypotheses, options)
+    return Answer(plan, cohort, findings, make_record(gathered, plan, clock, folder))
 
 
 def _opened(out: str | Path | None, study: Study) -> RunFolder | None:

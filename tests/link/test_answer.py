@@ -5,6 +5,7 @@ import pytest
 from scipy import stats
 
 from socibrain.errors import DocumentRefused
+from socibrain.link import answer
 from socibrain.link.answer import link
 from socibrain.link.options import LinkOptions
 from tests.link.made_cohorts import ask, cohort_of, made_persons
@@ -167,3 +168,29 @@ def test_same_seed_same_answers() -> None:
 def test_unknown_columns_are_refused() -> None:
     with pytest.raises(DocumentRefused, match="did you mean 'other'"):
         plain(made_persons(), ask("othr"))
+
+
+def broken(*_: object, **__: object) -> None:
+    raise np.linalg.LinAlgError("Singular matrix")
+
+
+def test_a_fit_that_breaks_down_fails_alone(monkeypatch: pytest.MonkeyPatch) -> None:
+    persons = made_persons(4, sites=SITES)
+    whole = answer.fit
+
+    def sometimes(outcome, columns, sites):
+        return broken() if columns.shape[1] == 3 else whole(outcome, columns, sites)
+
+    monkeypatch.setattr(answer, "fit", sometimes)
+    failed, fine = plain(persons, ask("y", "x", name="bare"), ask("y", "x", "z", name="adjusted")).findings
+    assert (failed.status, failed.reason) == ("failed", "the fit broke down numerically (Singular matrix)")
+    assert np.isnan(failed.p_permutation)
+    assert fine.status in ("ok", "boundary")
+
+
+def test_a_check_that_cannot_be_made_is_told(monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setattr(answer, "cross_check", broken)
+    (found,) = plain(made_persons(4, sites=SITES), ask("y", "x", "z")).findings
+    assert found.check is None
+    assert found.status in ("ok", "boundary")
+    assert "statsmodels could not fit it again (Singular matrix)" in found.notes
