@@ -47,27 +47,37 @@ class Refusal(Exception):
         self.faults = faults
 
     def __str__(self) -> str:
-        return told(self.faults)
+        return told(self.faults, in_full=True)
 
 
 PLACES_SHOWN = 3
 """How many places of one statement are named before the rest is only counted."""
+STATEMENTS_SHOWN = 5
+"""How many statements of one kind are told before the faults left are only counted."""
+THE_REST = "`socibrain audit` writes all of them to problems.csv once the people table can be read"
 
 
-def told(faults: Iterable[Fault]) -> str:
-    """All faults in words; what holds in several places is said once, with the first of them.
+def told(faults: Iterable[Fault], *, in_full: bool = False) -> str:
+    """Faults in words, kind by kind; what holds in several places is said once, with the first of them.
+
+    Unless ``in_full``, five statements of a kind are told and the faults left are counted: that is
+    for data files, whose faults an audit puts on record.
 
     >>> print(told(Fault(f"{name}.tsv", "", "empty", "is empty", "save it again") for name in "abcd"))
     a.tsv; b.tsv; c.tsv and 1 more  is empty
       to mend: save it again
     """
-    places: dict[tuple[str, str], list[str]] = {}
+    kinds: dict[str, dict[tuple[str, str], list[str]]] = {}
     for fault in faults:
-        places.setdefault((fault.found, fault.mend), []).append(fault.where)
+        kinds.setdefault(fault.kind, {}).setdefault((fault.found, fault.mend), []).append(fault.where)
     lines = []
-    for (found, mend), where in places.items():
-        more = f" and {len(where) - PLACES_SHOWN} more" if len(where) > PLACES_SHOWN else ""
-        lines.append(f"{'; '.join(where[:PLACES_SHOWN])}{more}  {found}\n  to mend: {mend}")
+    for places in kinds.values():
+        shown = len(places) if in_full else STATEMENTS_SHOWN
+        for (found, mend), where in list(places.items())[:shown]:
+            more = f" and {len(where) - PLACES_SHOWN} more" if len(where) > PLACES_SHOWN else ""
+            lines.append(f"{'; '.join(where[:PLACES_SHOWN])}{more}  {found}\n  to mend: {mend}")
+        if rest := sum(map(len, list(places.values())[shown:])):
+            lines.append(f"and {rest} more of this kind: {THE_REST}")
     return "\n".join(lines)
 
 
@@ -81,6 +91,9 @@ class DataRefused(Refusal):
     """A data file cannot be used as it is."""
 
     exit_code = 4
+
+    def __str__(self) -> str:
+        return told(self.faults)
 
 
 class Faults:
