@@ -59,6 +59,7 @@ NEGATIVE = """\
     # negative: absolute       # they count by their size
     # negative: refuse         # there must not be any
 """
+NONE_SEEN = "no negative weight was seen; a file that holds one is refused"
 
 
 def begin(folder: Path) -> str:
@@ -219,9 +220,8 @@ def _brain(brains: dict[FilePattern, Look], taken: set[str]) -> str:
         if look.several:
             body += [f"    # decide: {each.files[0]} {_remark(look.trouble)}", "    # variable: ..."]
         else:
-            body.append(
-                f"    # {each.files[0]}: {look.regions} regions, weights {look.low:.3g} to {look.high:.3g}"
-            )
+            seen = f"in {look.files} of {len(each.files)} files weights are {look.low:.3g} to {look.high:.3g}"
+            body.append(f"    # {each.files[0]}: {look.regions} regions; {seen}")
         if look.layout == "edge_list":
             body.append("    layout: edge_list")
             body.append(
@@ -231,7 +231,7 @@ def _brain(brains: dict[FilePattern, Look], taken: set[str]) -> str:
         if look.several or look.low < 0:
             body += NEGATIVE.splitlines()
         else:
-            body.append("    negative: refuse         # that file holds none; any other that does is refused")
+            body.append(f"    negative: refuse         # {NONE_SEEN}")
         lines += [dumb + line for line in body]
     return "\n".join(lines) + "\n"
 

@@ -17,6 +17,8 @@ from socibrain.sources.matrix_files import RELATION
 from socibrain.sources.matrix_text import read_numbers
 
 TEXT_SUFFIXES = (".tsv", ".csv", ".txt", ".edgelist", ".edges")
+LOOKED_AT = 8
+"""Files of one pattern that are read to guess what all of them hold."""
 LABEL = r"[0-9A-Za-z+]+"
 VISIT = re.compile(
     rf"(?<![0-9A-Za-z{{])(?P<word>ses-|(?:session|visit|wave|time|scan|v|t|w)[-_]?(?=[0-9]))(?P<value>{LABEL})"
@@ -38,7 +40,11 @@ class FilePattern:
 
 @dataclass(frozen=True)
 class Look:
-    """What one matrix file looks like inside; ``trouble`` says why it is no network."""
+    """What the matrix files of a pattern look like inside; ``trouble`` says why the first is no network.
+
+    ``low`` and ``high`` are the lowest and highest weight in the ``files`` that were looked at, all
+    else is of the first.
+    """
 
     layout: str = ""
     regions: int = 0
@@ -48,6 +54,7 @@ class Look:
     trouble: str = ""
     several: bool = False
     """Whether the file holds several arrays; ``trouble`` then lists them."""
+    files: int = 1
 
 
 def file_patterns(files: Iterable[str], ids: Collection[str]) -> list[FilePattern]:
@@ -85,14 +92,24 @@ def file_patterns(files: Iterable[str], ids: Collection[str]) -> list[FilePatter
 
 
 def look_inside(folder: Path, files: FilePattern) -> Look:
-    """Read the first file of a pattern, and say what it holds."""
+    """Read up to eight files of a pattern, spread over all of them, and say what they hold."""
+    last = len(files.files) - 1
+    places = np.linspace(0, last, min(LOOKED_AT, last + 1)).round().astype(int)
+    first, *others = (_look_at(folder, files.files[place]) for place in places)
+    alike = [first, *(look for look in others if first.layout and look.layout == first.layout)]
+    low, high = min(look.low for look in alike), max(look.high for look in alike)
+    return replace(first, low=low, high=high, files=len(alike))
+
+
+def _look_at(folder: Path, file: str) -> Look:
+    """Read one file, and say what it holds."""
     faults = Faults()
-    content = (folder / files.files[0]).read_bytes()
-    suffix = PurePosixPath(files.files[0]).suffix.lower()
+    content = (folder / file).read_bytes()
+    suffix = PurePosixPath(file).suffix.lower()
     if suffix in SUFFIXES:
-        weights = read_array(content, suffix, None, files.files[0], faults)
+        weights = read_array(content, suffix, None, file, faults)
     else:
-        table = read_numbers(content, files.files[0], faults)
+        table = read_numbers(content, file, faults)
         weights = None if table is None else table.values
         if table is not None and not table.names and _is_edge_list(table.values):
             ends = table.values[:, :2]

@@ -167,6 +167,31 @@ def test_brain_only_and_no_negative_weights(tmp_path: Path) -> None:
     assert study.says.visits == ()
 
 
+def test_one_negative_weight_among_the_files_looked_at_is_left_to_decide(tmp_path: Path) -> None:
+    ids = [f"p{k:02d}" for k in range(1, 23)]
+    write_people(tmp_path, ids)
+    for person in ids:
+        write_matrix(tmp_path, f"nets/{person}.tsv")
+    text = begin(tmp_path)
+    assert "in 8 of 22 files weights are 0." in text
+    assert "    negative: refuse  " in text
+    for looked_at in ("p04", "p22"):  # of 22 files 1, 4, 7, 10, 13, 16, 19 and 22 are looked at
+        write_matrix(tmp_path, f"nets/{looked_at}.tsv", low=-1)
+        text = begin(tmp_path)
+        assert "    negative: refuse  " not in text
+        assert "    # decide: what becomes of negative weights?" in text
+        assert "files weights are -0." in text
+        write_matrix(tmp_path, f"nets/{looked_at}.tsv")
+
+
+def test_only_files_like_the_first_count_among_those_looked_at(tmp_path: Path) -> None:
+    write_people(tmp_path)
+    for person in IDS:
+        write_matrix(tmp_path, f"nets/{person}.tsv")
+    write(tmp_path, "nets/31.tsv", [(-1, "x")])
+    assert "in 3 of 4 files weights are 0." in begin(tmp_path)
+
+
 def test_edge_lists_with_their_first_number(tmp_path: Path) -> None:
     write_people(tmp_path)
     for person in IDS:
