@@ -127,12 +127,15 @@ def test_who_did_not_answer_has_no_position_and_is_still_named(answer: Answer) -
     assert (persons.loc[sorted(silent), "advice.in_degree"] > 0).any()
 
 
-def test_every_column_is_in_the_dictionary(answer: Answer, run: Path) -> None:
-    for stem in ("persons", "sites", "findings", "ledger"):
-        header = (run / f"{stem}.csv").read_text(encoding="utf-8").splitlines()[0].split(",")
-        said = json.loads((run / f"{stem}.json").read_text(encoding="utf-8"))
-        assert set(header) == set(said), stem
-        assert all(entry["Description"] for entry in said.values()), stem
+def test_every_column_of_every_table_is_in_a_dictionary(answer: Answer, run: Path) -> None:
+    tables = [path for path in run.iterdir() if path.suffix in (".csv", ".parquet")]
+    assert len(tables) == 8
+    for path in tables:
+        table = pd.read_csv(path) if path.suffix == ".csv" else pd.read_parquet(path)
+        said = json.loads(path.with_suffix(".json").read_text(encoding="utf-8"))
+        assert list(said) == list(table.columns), path.name
+        for name, entry in said.items():
+            assert entry["Description"] not in ("", name), (path.name, name)
 
 
 def test_ids_survive_as_text(run: Path, answer: Answer) -> None:
