@@ -53,22 +53,46 @@ def answer(finding: Finding, findings: Findings, columns: Mapping[str, Column]) 
         verdict=verdict,
         badge=BADGES[verdict],
         sentence=sentence,
-        numbers=_numbers(finding, findings) if told else "",
+        numbers=_numbers(finding, findings, verdict) if told else "",
         notes=tuple(_notes(finding, findings, verdict)) if told else (),
     )
 
 
 def spoken(name: str, columns: Mapping[str, Column]) -> str:
-    """A column as it is called inside a sentence: its label, without a capital to begin with.
+    """A column as running text calls it: measures in quotes, where they come from behind them.
+
+    What came with the people table or with scans loses its capital; it is quoted only where its
+    name ends in brackets of its own.
 
     >>> spoken("years_of_service", {}), spoken("scans.head_motion", {})
     ('years of service', 'head motion (scans)')
     """
-    label = columns[name].label if name in columns else name
-    if label == name:
-        origin, _, own = name.replace("_", " ").rpartition(".")
-        label = f"{own} ({origin})" if origin else own
-    return label[0].lower() + label[1:] if label[1:2].islower() else label
+    origin, _, own = name.rpartition(".")
+    origin, label, quoted = origin.replace("_", " "), own.replace("_", " "), False
+    if name in columns:
+        quoted = bool(columns[name].measure)
+        label = columns[name].label if columns[name].label != name else label
+    whence = f" ({origin})" if origin else ""
+    label = label.removesuffix(whence)
+    if quoted or (whence and label.endswith(")")):
+        return f"“{label}”{whence}"
+    return f"{label[0].lower() + label[1:] if label[1:2].islower() else label}{whence}"
+
+
+def titled(name: str, columns: Mapping[str, Column]) -> str:
+    """A column as a table calls it: its label, with a capital.
+
+    >>> titled("years_of_service", {})
+    'Years of service'
+    """
+    label = columns[name].label if name in columns and columns[name].label != name else spoken(name, {})
+    return label[:1].upper() + label[1:]
+
+
+def people_and_sites(finding: Finding) -> str:
+    """How many people were analysed, and in how many sites where there are several."""
+    people = f"{count(finding.n)} {'person' if finding.n == 1 else 'people'}"
+    return f"{people} in {count(finding.n_sites)} sites" if finding.n_sites > 1 else people
 
 
 def listed(names: list[str]) -> str:
@@ -81,11 +105,11 @@ def listed(names: list[str]) -> str:
 
 
 def within(finding: Finding) -> str:
-    """Where the comparison is made.
+    """Where the comparison is made, before or behind other words: '' for a single site.
 
     People are compared with others of their own site; with a single site there is nothing to say.
     """
-    return "within sites" if finding.n_sites > 1 else "across people"
+    return "within sites" if finding.n_sites > 1 else ""
 
 
 def family_size(finding: Finding, findings: Findings) -> int:
@@ -103,17 +127,15 @@ def _verdict(finding: Finding, alpha: float) -> Verdict:
 
 
 def _found(finding: Finding, columns: Mapping[str, Column]) -> str:
-    place = within(finding)
     way = "higher" if finding.estimate > 0 else "lower"
     predictor = spoken(finding.hypothesis.predictor, columns)
     outcome = spoken(finding.hypothesis.outcome, columns)
-    who, than = f"people with higher {predictor}", ""
+    who, than = f"people with higher values of {predictor}", ""
     if _is_yes_or_no(finding.hypothesis.predictor, columns):
-        who, than = f"people who count as “{predictor}”", " than people who do not"
-    return (
-        f"{place[0].upper()}{place[1:]}, {who} tended to have {way} {outcome}{than}"
-        f"{_allowing(finding, columns)}."
-    )
+        who, than = f"people who count as {predictor}", " than people who do not"
+    place = within(finding)
+    told = f"{place}, {who}" if place else who
+    return _as_sentence(f"{told} tended to have {way} values of {outcome}{than}{_allowing(finding, columns)}")
 
 
 def _is_yes_or_no(name: str, columns: Mapping[str, Column]) -> bool:
@@ -123,10 +145,11 @@ def _is_yes_or_no(name: str, columns: Mapping[str, Column]) -> bool:
 
 def _not_found(finding: Finding, columns: Mapping[str, Column]) -> str:
     hypothesis = finding.hypothesis
+    place = f" {within(finding)}".rstrip()
     aim = f" in the predicted direction ({hypothesis.direction})" if hypothesis.one_sided else ""
     return (
         f"No association between {spoken(hypothesis.predictor, columns)} and "
-        f"{spoken(hypothesis.outcome, columns)} was found {within(finding)}{aim}"
+        f"{spoken(hypothesis.outcome, columns)} was found{place}{aim}"
         f"{_allowing(finding, columns)}; the interval runs from {decimal(finding.ci_low)} to "
         f"{decimal(finding.ci_high)}."
     )
@@ -143,15 +166,29 @@ def _allowing(finding: Finding, columns: Mapping[str, Column]) -> str:
     return f", allowing for {listed(adjust)}" if adjust else ""
 
 
-def _numbers(finding: Finding, findings: Findings) -> str:
+def _numbers(finding: Finding, findings: Findings, verdict: Verdict) -> str:
     alpha = findings.options.alpha
-    sites = f"{count(finding.n_sites)} site{'s' if finding.n_sites != 1 else ''}"
     return (
         f"Standardised slope {decimal(finding.estimate)} ({level(alpha)} interval "
-        f"{decimal(finding.ci_low)} to {decimal(finding.ci_high)}), "
+        f"{decimal(finding.ci_low)} to {decimal(finding.ci_high)}), {_sided(finding)}"
         f"p = {p_value(finding.p_family, alpha)}{_corrected(finding, findings)}; "
-        f"{count(finding.n)} people in {sites}."
+        f"{people_and_sites(finding)}; {_prediction(finding, verdict)}."
     )
+
+
+def _prediction(finding: Finding, verdict: Verdict) -> str:
+    """Whether the plan said beforehand which way the association would go."""
+    direction = finding.hypothesis.direction
+    if not direction:
+        return "no direction was predicted"
+    if verdict != "found":
+        return f"a {direction} association was predicted"
+    met = (finding.estimate > 0) == (direction == "positive")
+    return "as predicted" if met else "against the prediction"
+
+
+def _sided(finding: Finding) -> str:
+    return "one-sided " if finding.hypothesis.one_sided else ""
 
 
 def _corrected(finding: Finding, findings: Findings) -> str:
@@ -176,7 +213,7 @@ def _notes(finding: Finding, findings: Findings, verdict: Verdict) -> list[str]:
         notes.append("Not finding an association does not show that there is none.")
     if hypothesis.role == "exploratory":
         notes.append("Exploratory: it needs to be confirmed in other people.")
-    notes += _disagreement(finding, alpha)
+    notes += _one_side(finding) + _disagreement(finding, alpha)
     if finding.status == "boundary":
         notes.append("The variance between sites was estimated as zero, the lowest value it can take.")
     notes += [_as_sentence(note) for note in finding.notes]
@@ -189,8 +226,30 @@ def _as_sentence(text: str) -> str:
     return f"{text[:1].upper()}{text[1:].rstrip('.')}."
 
 
+def _one_side(finding: Finding) -> list[str]:
+    """What to say of a test that looks at the predicted side only."""
+    if not finding.hypothesis.one_sided:
+        return []
+    looks = f"The test is one-sided: it looks for a {finding.hypothesis.direction} association only"
+    if on_the_other_side(finding):
+        return [f"{looks}; the slope lies on the other side, of which p says nothing."]
+    return [f"{looks}. The interval has two sides."]
+
+
+def on_the_other_side(finding: Finding) -> bool:
+    """Whether a one-sided test found its slope where it did not look."""
+    asked = finding.hypothesis
+    return asked.one_sided and (finding.estimate > 0) != (asked.direction == "positive")
+
+
 def _disagreement(finding: Finding, alpha: float) -> list[str]:
-    """What to say when the interval and the corrected p point to different sides."""
+    """What to say when the interval and the corrected p point to different sides.
+
+    An interval of 1 − alpha has alpha / 2 on each side, so that a one-sided p between alpha / 2 and
+    alpha goes with an interval that includes zero.
+    """
+    if on_the_other_side(finding):
+        return []
     apart = finding.ci_low > 0 or finding.ci_high < 0
     if apart and finding.p_family > alpha:
         alone = "after correction for the family" if finding.p_permutation <= alpha else "by shuffling"
@@ -198,7 +257,7 @@ def _disagreement(finding: Finding, alpha: float) -> list[str]:
             f"The interval, made for this hypothesis alone, leaves out zero; {alone} the evidence "
             "falls short."
         ]
-    if not apart and finding.p_family <= alpha:
+    if not apart and finding.p_family <= (alpha / 2 if finding.hypothesis.one_sided else alpha):
         return ["The interval includes zero although p is small: read this as a borderline finding."]
     return []
 

@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import replace
 
 import pytest
 
 from socibrain.cohort.table import Column
 from socibrain.link.finding import Finding
-from socibrain.report.words import Answer, answer, listed, spoken
+from socibrain.measures.catalogue import Measure, all_measures
+from socibrain.report.words import Answer, answer, listed, spoken, titled
 from tests.report.made_study import COLUMNS, finding, findings
 
 
@@ -21,12 +23,12 @@ def test_a_negative_association_that_was_predicted() -> None:
     assert said.verdict == "found"
     assert said.badge == "association found"
     assert said.sentence == (
-        "Within sites, people with higher constraint (advice) tended to have lower "
-        "mean participation (rest), allowing for age."
+        "Within sites, people with higher values of “Constraint” (advice) tended to have lower "
+        "values of “Mean participation” (rest), allowing for age."
     )
     assert said.numbers == (
         "Standardised slope −0.31 (95 % interval −0.45 to −0.17), p = 0.001 corrected for the 2 hypotheses "
-        "of its family; 168 people in 12 sites."
+        "of its family; 168 people in 12 sites; as predicted."
     )
     assert said.notes == (
         "The plan predicted a negative association.",
@@ -37,8 +39,8 @@ def test_a_negative_association_that_was_predicted() -> None:
 def test_a_positive_association_against_the_prediction_is_said_to_be_so() -> None:
     said = told(finding(estimate=0.2, ci=(0.05, 0.35), direction="negative"))
     assert said.sentence == (
-        "Within sites, people with higher constraint (advice) tended to have higher "
-        "mean participation (rest)."
+        "Within sites, people with higher values of “Constraint” (advice) tended to have higher "
+        "values of “Mean participation” (rest)."
     )
     assert said.notes[0] == "The plan predicted a negative association; the one found has the opposite sign."
     assert "Exploratory: it needs to be confirmed in other people." in said.notes
@@ -49,7 +51,7 @@ def test_no_association_is_told_with_its_interval_and_without_a_claim_of_none() 
     said = told(finding(estimate=0.03, ci=(-0.12, 0.18), p=0.71, p_family=0.97, direction="negative"))
     assert said.badge == "no association found"
     assert said.sentence == (
-        "No association between constraint (advice) and mean participation (rest) was found within sites; "
+        "No association between “Constraint” (advice) and “Mean participation” (rest) was found within sites; "
         "the interval runs from −0.12 to 0.18."
     )
     assert said.notes[0] == "Not finding an association does not show that there is none."
@@ -111,8 +113,46 @@ def test_refused_hypotheses_do_not_count_in_the_family() -> None:
 
 def test_a_study_of_one_site_is_not_said_to_compare_within_sites() -> None:
     said = told(finding(n_sites=1))
-    assert said.sentence.startswith("Across people, people with higher constraint")
-    assert said.numbers.endswith("168 people in 1 site.")
+    assert said.sentence == (
+        "People with higher values of “Constraint” (advice) tended to have lower values of "
+        "“Mean participation” (rest)."
+    )
+    assert "; 168 people; " in said.numbers
+    none = told(finding(n_sites=1, p_family=0.4))
+    assert "(rest) was found; the interval runs" in none.sentence
+    for one in (said, none):
+        assert "site" not in f"{one.sentence} {one.numbers} {one.notes}"
+
+
+@pytest.mark.parametrize(
+    ("asked", "p_family", "prediction"),
+    [
+        ({"direction": "negative"}, 0.001, "as predicted"),
+        ({"direction": "positive"}, 0.001, "against the prediction"),
+        ({"direction": "positive"}, 0.4, "a positive association was predicted"),
+        ({}, 0.001, "no direction was predicted"),
+        ({}, 0.4, "no direction was predicted"),
+    ],
+)
+def test_the_numbers_say_what_was_predicted(asked: dict[str, str], p_family: float, prediction: str) -> None:
+    assert told(finding(p_family=p_family, **asked)).numbers.endswith(f"; {prediction}.")
+
+
+@pytest.mark.parametrize("passport", all_measures().values(), ids=lambda passport: passport.name)
+def test_every_measure_makes_a_readable_sentence(passport: Measure) -> None:
+    name = f"friends.{passport.name}"
+    mine = Column(
+        name, f"{passport.label} (friends)", passport.says, passport.unit, passport.reading,
+        passport.undefined, passport.source, passport.name, "friends", passport.low, passport.high,
+    )  # fmt: skip
+    asked = [finding(predictor=name), finding(outcome=name, p_family=0.4), finding(adjust=(name,))]
+    for one in asked:
+        sentence = answer(one, findings([one]), COLUMNS | {name: mine}).sentence
+        assert f"“{passport.label}” (friends)" in sentence
+        assert not re.search(r"\)\s*\(", sentence)
+        assert sentence.count("“") == sentence.count("”") == 2 + (one is asked[2])
+    by_group = "people who count as “" in answer(asked[0], findings(asked), COLUMNS | {name: mine}).sentence
+    assert by_group == (passport.unit == "1 = member, 0 = not")
 
 
 def test_a_predictor_of_yes_or_no_is_told_as_a_group() -> None:
@@ -132,8 +172,8 @@ def test_a_predictor_of_yes_or_no_is_told_as_a_group() -> None:
     one = finding(predictor="advice.club")
     said = answer(one, findings([one]), COLUMNS | {"advice.club": club})
     assert said.sentence == (
-        "Within sites, people who count as “rich-club member (advice)” tended to have lower "
-        "mean participation (rest) than people who do not."
+        "Within sites, people who count as “Rich-club member” (advice) tended to have lower "
+        "values of “Mean participation” (rest) than people who do not."
     )
 
 
@@ -151,7 +191,11 @@ def test_no_sentence_speaks_of_causes() -> None:
 
 
 def test_names_inside_sentences() -> None:
-    assert spoken("rest.modularity", COLUMNS) == "Q (rest)"
+    assert spoken("rest.modularity", COLUMNS) == "“Q” (rest)"
+    assert titled("rest.modularity", COLUMNS) == "Q (rest)"
+    assert titled("scans.head_motion", {}) == "Head motion (scans)"
+    assert spoken("age", COLUMNS) == "age"
+    assert spoken("scans.motion (mm)", {}) == "“motion (mm)” (scans)"
     assert spoken("years_of_service", COLUMNS) == "years of service"
     assert listed([]) == ""
     assert listed(["a", "b"]) == "a and b"
