@@ -231,15 +231,16 @@ def _one_side(finding: Finding) -> list[str]:
     if not finding.hypothesis.one_sided:
         return []
     looks = f"The test is one-sided: it looks for a {finding.hypothesis.direction} association only"
-    if on_the_other_side(finding):
+    if _on_the_other_side(finding):
         return [f"{looks}; the slope lies on the other side, of which p says nothing."]
     return [f"{looks}. The interval has two sides."]
 
 
-def on_the_other_side(finding: Finding) -> bool:
-    """Whether a one-sided test found its slope where it did not look."""
+def _on_the_other_side(finding: Finding) -> bool:
+    """Whether a one-sided test met its slope where it did not look."""
     asked = finding.hypothesis
-    return asked.one_sided and (finding.estimate > 0) != (asked.direction == "positive")
+    against = -finding.estimate if asked.direction == "positive" else finding.estimate
+    return asked.one_sided and against > 0
 
 
 def _disagreement(finding: Finding, alpha: float) -> list[str]:
@@ -248,7 +249,7 @@ def _disagreement(finding: Finding, alpha: float) -> list[str]:
     An interval of 1 − alpha has alpha / 2 on each side, so that a one-sided p between alpha / 2 and
     alpha goes with an interval that includes zero.
     """
-    if on_the_other_side(finding):
+    if _on_the_other_side(finding):
         return []
     apart = finding.ci_low > 0 or finding.ci_high < 0
     if apart and finding.p_family > alpha:

@@ -51,8 +51,8 @@ def test_no_association_is_told_with_its_interval_and_without_a_claim_of_none() 
     said = told(finding(estimate=0.03, ci=(-0.12, 0.18), p=0.71, p_family=0.97, direction="negative"))
     assert said.badge == "no association found"
     assert said.sentence == (
-        "No association between “Constraint” (advice) and “Mean participation” (rest) was found within sites; "
-        "the interval runs from −0.12 to 0.18."
+        "No association between “Constraint” (advice) and “Mean participation” (rest) was found within "
+        "sites; the interval runs from −0.12 to 0.18."
     )
     assert said.notes[0] == "Not finding an association does not show that there is none."
     assert not any("predicted" in note for note in said.notes)
