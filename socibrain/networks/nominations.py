@@ -19,7 +19,7 @@ Fate = Literal[
 FATES: tuple[Fate, ...] = get_args(Fate)
 State = Literal["answered", "named nobody", "did not answer"]
 
-_DECIDE = f"decide in {DECISIONS}, or correct the answers"
+_DECIDE = f"decide in {DECISIONS} (`socibrain audit` writes the list), or correct the answers"
 _NOTES: dict[Fate, tuple[str, str]] = {
     "duplicate": ("names somebody who is named already; counted once", "nothing, or correct the answers"),
     "self": ("names the person who answers; not counted", "nothing, or correct the answers"),

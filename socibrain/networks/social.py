@@ -15,7 +15,7 @@ from socibrain.sources.decisions import OpenName
 from socibrain.sources.names import NameBook
 from socibrain.sources.records import Answers, RosterEntry
 from socibrain.sources.study import Study, TieRule
-from socibrain.sources.tables import mend_unknown
+from socibrain.sources.tables import listed, mend_unknown
 
 Array = NDArray[np.float64]
 Mask = NDArray[np.bool_]
@@ -81,7 +81,8 @@ def build_social_networks(
     ``answered`` holds those who answered by the status table; who is in it and has no name there named
     nobody (who is in it and has no row for any question is a grave fault: the answers may be lost),
     and answers of people outside it are set aside.  Without a status table (None) whoever
-    has a row for the question, even an empty one, answered it.  ``names`` is built on the whole
+    has a row for the question, even an empty one, answered it; who only has empty ones is put on
+    record.  ``names`` is built on the whole
     roster, so that a person left out is recognised and nobody else is taken for them.
     Grave fault: a chooser who is not on the roster.
     """
@@ -177,6 +178,14 @@ def _note_silence(
                    f"has a header and no rows, and {len(silent)} people answered by the status table",
                    "export the answers again, or correct the status table")  # fmt: skip
         return
+    empty = [person for person in kept if person in answers.first_line and person not in wrote]
+    if answered is None and empty:
+        who = f"{len(empty)} people have a row" if len(empty) > 1 else "1 person has a row"
+        faults.add(answers.file, "", "empty-rows",
+                   f"{who} and named nobody, and no `answered:` says whether they answered; "
+                   f"counted as having answered and named nobody: {listed(empty)}",
+                   "declare questionnaire.answered, with the column that says who answered",
+                   grave=False)  # fmt: skip
     for person in kept:
         line = answers.first_line.get(person)
         place = "" if line is None else f"line {line}"

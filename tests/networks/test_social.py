@@ -173,6 +173,7 @@ def test_every_oddity_is_on_record_by_line(toy: Toy) -> None:
         "named-outside-site": "advice.tsv:line 8, column names",
         "named-ambiguous": "advice.tsv:line 10, column names",
         "named-off-roster": "advice.tsv:line 11, column names",
+        "empty-rows": "advice.tsv",
     }
     assert not any(fault.grave for fault in faults)
 
@@ -185,6 +186,12 @@ def test_no_fault_holds_a_written_name(toy: Toy) -> None:
     assert {"unknown-chooser", "over-cap", "answers-without-status", "gave-nothing", "named-self"} <= kinds
     for fault in faults:
         assert not any(part in str(fault).casefold() for part in WRITTEN), fault
+
+
+def test_where_to_decide_is_said_with_the_command_that_lists_the_names(toy: Toy) -> None:
+    _, faults = toy.read()
+    mends = [fault.mend for fault in faults if fault.kind == "named-ambiguous"]
+    assert mends == [f"decide in {DECISIONS} (`socibrain audit` writes the list), or correct the answers"]
 
 
 def test_only_a_human_turns_a_misspelling_into_a_tie(toy: Toy) -> None:
@@ -237,6 +244,20 @@ def test_without_status_each_question_speaks_for_itself(toy: Toy) -> None:
     assert states["advice", "14"] == "did not answer"
     assert states["free", "007"] == "named nobody"
     assert of_kind(faults, "no-row") == ["advice.tsv", *["free.tsv"] * 5]
+
+
+def test_empty_rows_without_a_status_are_counted_in_one_remark(toy: Toy) -> None:
+    _, faults = toy.read()
+    (fault,) = [fault for fault in faults if fault.kind == "empty-rows"]
+    assert fault.found == (
+        "2 people have a row and named nobody, and no `answered:` says whether they answered; "
+        "counted as having answered and named nobody: 12, 22"
+    )
+    assert not fault.grave
+    _, alone = replace(toy, rows=(("NA", "Jo Moor"), ("12", ""))).read()
+    assert any(fault.found.startswith("1 person has a row and named nobody") for fault in alone)
+    _, decided = replace(toy, answered=frozenset({"007", "12", "NA", "13", "21", "22"})).read()
+    assert of_kind(decided, "empty-rows") == []
 
 
 def test_more_names_than_the_cap_are_kept_and_noted(toy: Toy) -> None:
