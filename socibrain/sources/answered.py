@@ -22,7 +22,9 @@ def read_answered(
     says = study.says.questionnaire.answered if study.says.questionnaire else None
     if says is None:
         return None
-    table = read_table(study.path(says.file), says.file, (says.person, says.column), faults)
+    here = "questionnaire.answered"
+    needed = {says.person: f"{here}.person", says.column: f"{here}.column"}
+    table = read_table(study.path(says.file), says.file, needed, faults)
     if table is None:
         return None
     note_unused(table, says.column, says.values, "counted as answered", faults)

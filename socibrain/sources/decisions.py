@@ -119,7 +119,7 @@ def _appended(before: str, columns: tuple[str, ...], rows: list[dict[str, str]])
 
 def _read(study: Study, faults: Faults) -> TextTable | None:
     path = study.path(DECISIONS)
-    return read_table(path, DECISIONS, COLUMNS[:3], faults) if path.exists() else None
+    return read_table(path, DECISIONS, dict.fromkeys(COLUMNS[:3], ""), faults) if path.exists() else None
 
 
 def _key(written: str) -> str:

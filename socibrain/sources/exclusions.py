@@ -34,8 +34,8 @@ def read_exclusions(study: Study, people: PeopleTable, faults: Faults) -> tuple[
     leaves out 0.51.
     """
     left_out: list[LeftOut] = []
-    for rule in study.says.exclusions:
-        table, key = _looked_up(rule, study, people, faults)
+    for number, rule in enumerate(study.says.exclusions):
+        table, key = _looked_up(rule, number, study, people, faults)
         if table is not None:
             left_out += _apply(rule, table, key, _concerned(rule, study, people), faults)
     return tuple(left_out)
@@ -48,11 +48,11 @@ def read_rule_values(study: Study, people: PeopleTable) -> dict[str, dict[tuple[
     none.  Cells without a number are left out: `read_exclusions` tells what is wrong with them.
     """
     values: dict[str, dict[tuple[str, str], float]] = {}
-    for rule in study.says.exclusions:
+    for number, rule in enumerate(study.says.exclusions):
         unheard = Faults()
         if rule.file is None or rule.values is not None:
             continue
-        table, key = _looked_up(rule, study, people, unheard)
+        table, key = _looked_up(rule, number, study, people, unheard)
         if table is not None:
             values[f"{PurePosixPath(rule.file).stem}.{rule.column}"] = {
                 (row.person, row.visit): value
@@ -63,13 +63,14 @@ def read_rule_values(study: Study, people: PeopleTable) -> dict[str, dict[tuple[
 
 
 def _looked_up(
-    rule: Exclusion, study: Study, people: PeopleTable, faults: Faults
+    rule: Exclusion, number: int, study: Study, people: PeopleTable, faults: Faults
 ) -> tuple[TextTable | None, Key]:
     """The table that a rule looks into, and what says whose its rows are."""
-    file, person = rule.file, rule.person
+    file, person, here = rule.file, rule.person, f"exclusions[{number}]"
+    needed = {rule.column: f"{here}.column"} | ({rule.visit: f"{here}.visit"} if rule.visit else {})
     if file is None:
         file, person = study.says.people.file, study.says.people.id
-    needed = tuple(name for name in (person, rule.column, rule.visit) if name)
+    needed |= {person: f"{here}.person"}
     key = Key(person, people.ids, rule.visit, study.says.visits)
     return read_table(study.path(file), file, needed, faults), key
 

@@ -161,7 +161,7 @@ def _read(folder: Path, file: str, faults: Faults) -> TextTable | None:
     path = folder / file
     if path.suffix.lower() not in (".tsv", ".csv") or path.stat().st_size > MOST_BYTES:
         return None
-    table = read_table(path, file, (), faults)
+    table = read_table(path, file, {}, faults)
     if table is None or not table.rows or any(as_number(name) is not None for name in table.columns):
         return None
     return table

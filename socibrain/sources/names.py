@@ -167,7 +167,7 @@ def _read_aliases(
     asked = study.says.questionnaire
     if asked is None or asked.aliases is None:
         return {}
-    table = read_table(study.path(asked.aliases), asked.aliases, ("written", "person"), faults)
+    table = read_table(study.path(asked.aliases), asked.aliases, {"written": "", "person": ""}, faults)
     people, sites = {entry.person for entry in roster}, {entry.site for entry in roster}
     aliases: dict[tuple[str, str], frozenset[str]] = {}
     for line, row in table or ():

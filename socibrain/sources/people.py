@@ -41,9 +41,11 @@ def read_people(study: Study, faults: Faults) -> PeopleTable | None:
     declares no site) and ``role`` (all None where none is declared) are added.
     """
     says = study.says.people
-    chosen = [rule.column for rule in (says.invited, says.scanned) if rule]
-    declared = [says.id, says.site, says.role, *chosen, *says.numbers]
-    needed = tuple(dict.fromkeys(name for name in declared if name))
+    declared = [("id", says.id), ("site", says.site), ("role", says.role)]
+    chosen = [("invited", says.invited), ("scanned", says.scanned)]
+    declared += [(f"{entry}.column", rule.column) for entry, rule in chosen if rule]
+    declared += [("numbers", name) for name in says.numbers]
+    needed = {name: f"people.{entry}" for entry, name in declared if name}
     table = read_table(study.path(says.file), says.file, needed, faults)
     sidecar = str(PurePosixPath(says.file).with_suffix(".json"))
     labels = _read_sidecar(study, sidecar, faults)

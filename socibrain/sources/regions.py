@@ -19,7 +19,7 @@ def read_regions(study: Study, faults: Faults) -> RegionTable | None:
     says = study.says.regions
     if says is None:
         return None
-    needed = (says.name, says.system) if says.system else (says.name,)
+    needed = {says.name: "regions.name"} | ({says.system: "regions.system"} if says.system else {})
     table = read_table(study.path(says.file), says.file, needed, faults)
     if table is None or not _names_are_sound(table, says.name, faults):
         return None

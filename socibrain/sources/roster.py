@@ -26,7 +26,8 @@ def read_roster(study: Study, people: PeopleTable, faults: Faults) -> tuple[Rost
     declared = study.says.roster
     if declared is None:
         return tuple(RosterEntry(person, site, person) for person, site in homes.items())
-    needed = tuple(column for column in (declared.person, declared.name, declared.site) if column)
+    entries = {"person": declared.person, "name": declared.name, "site": declared.site}
+    needed = {column: f"roster.{entry}" for entry, column in entries.items() if column}
     table = read_table(study.path(declared.file), declared.file, needed, faults)
     if table is not None and not table.rows:
         faults.add(table.file, "", "empty", "has a header and no rows", "write one row per person")

@@ -7,7 +7,7 @@ import io
 import re
 import unicodedata
 from collections import Counter
-from collections.abc import Collection, Iterator, Sequence
+from collections.abc import Collection, Iterable, Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -100,6 +100,18 @@ def mend_unknown(person: str, known: Collection[str], otherwise: str) -> str:
     return otherwise if other is None else f"did you mean '{other}'?"
 
 
+def mend_column(name: str, header: Iterable[str], entry: str) -> str:
+    """How to mend a column that is not there; ``entry`` of the study file says what it is called.
+
+    >>> mend_column("participant_id", ["pupil", "answered"], "questionnaire.answered.person")
+    'valid here: answered, pupil; write the right one as `person: ...` in questionnaire.answered'
+    """
+    close = nearest(name, [cell for cell in header if cell])
+    part, _, key = entry.rpartition(".")
+    then = " write it" if close.endswith("?") else "; write the right one"
+    return f"{close}{then} as `{key}: ...` in {part}" if entry else close
+
+
 def listed(ids: Sequence[str]) -> str:
     """Ids for a message: the first of them, and how many more there are.
 
@@ -110,10 +122,11 @@ def listed(ids: Sequence[str]) -> str:
     return ", ".join(ids[:MOST_IDS]) + more
 
 
-def read_table(path: Path, shown: str, needed: tuple[str, ...], faults: Faults) -> TextTable | None:
+def read_table(path: Path, shown: str, needed: Mapping[str, str], faults: Faults) -> TextTable | None:
     """Read a tab- or comma-separated table (by suffix) with a header row.
 
-    ``shown`` is the path as the study writes it, ``needed`` the columns that must be there.
+    ``shown`` is the path as the study writes it, ``needed`` the columns that must be there, each
+    with the entry of the study file that names it ('' where its name is fixed).
     Returns None when the file cannot be used; every reason is then in ``faults``.
     """
     text = read_text(path, shown, faults)
@@ -162,7 +175,7 @@ def read_text(path: Path, shown: str, faults: Faults) -> str | None:
 
 
 def _checked(
-    shown: str, rows: list[tuple[int, list[str]]], needed: tuple[str, ...], faults: Faults
+    shown: str, rows: list[tuple[int, list[str]]], needed: Mapping[str, str], faults: Faults
 ) -> TextTable | None:
     header = rows[0][1]
     other = {",": "comma", ";": "semicolon", "\t": "tab"}
@@ -182,11 +195,11 @@ def _checked(
             sound = False
             faults.add(shown, "line 1", "duplicate-column", f"column '{name}' stands {times} times",
                        "give every column a name of its own")  # fmt: skip
-    for name in needed:
+    for name, entry in needed.items():
         if name not in header:
             sound = False
             faults.add(shown, "line 1", "missing-column", f"there is no column '{name}'",
-                       nearest(name, [cell for cell in header if cell]))  # fmt: skip
+                       mend_column(name, header, entry))  # fmt: skip
     ragged = [(line, len(cells)) for line, cells in rows[1:] if len(cells) != len(header)]
     for line, width in ragged[:MOST_RAGGED]:
         faults.add(shown, f"line {line}", "ragged", f"has {width} cells where the header has {len(header)}",

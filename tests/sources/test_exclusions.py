@@ -139,7 +139,7 @@ def test_missing_columns_and_files_are_refused(tmp_path: Path) -> None:
     left_out, faults = applied(study(tmp_path, rules))
     assert left_out == []
     assert [fault.kind for fault in faults] == ["missing-column", "missing-file"]
-    assert faults[0].mend == "did you mean 'motion'?"
+    assert faults[0].mend == "did you mean 'motion'? write it as `column: ...` in exclusions[0]"
 
 
 def test_the_numbers_behind_the_rules(tmp_path: Path) -> None:
@@ -179,3 +179,14 @@ def test_a_status_that_nobody_has_is_said_and_an_unusable_table_refused(tmp_path
     faults = Faults()
     assert read_answered(study(tmp_path, status="id\tstat\n1\t2\n"), faults) is None
     assert faults.any_grave
+
+
+def test_a_column_that_is_not_there_is_told_with_the_entry_that_names_it(tmp_path: Path) -> None:
+    faults = Faults()
+    assert read_answered(study(tmp_path, status="pupil\tstatus\n007\tdone\n"), faults) is None
+    (fault,) = faults
+    assert (fault.where, fault.found) == ("status.tsv:line 1", "there is no column 'id'")
+    here = "write the right one as `person: ...` in questionnaire.answered"
+    assert fault.mend == f"valid here: pupil, status; {here}"
+    _, told = applied(study(tmp_path, [BY_MOTION.replace("person: id, ", "")]))
+    assert told[0].mend.endswith(" as `person: ...` in exclusions[0]")

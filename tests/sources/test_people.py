@@ -164,7 +164,8 @@ def test_declared_columns_must_exist_and_the_nearest_is_offered(read: Reader) ->
     )
     assert people is None
     assert [fault.kind for fault in faults] == ["missing-column"] * 4
-    assert faults[0].mend == "did you mean 'harbour'?"
+    assert faults[0].mend == "did you mean 'harbour'? write it as `site: ...` in people"
+    assert faults[2].mend.endswith("; write the right one as `column: ...` in people.invited")
     assert {fault.found for fault in faults} >= {"there is no column 'duty'", "there is no column 'asked'"}
 
 

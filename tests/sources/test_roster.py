@@ -36,6 +36,13 @@ def read(tmp_path: Path) -> Reader:
     return reader  # type: ignore[return-value]
 
 
+def test_a_roster_with_another_id_column_is_told_which_entry_names_it(read: Reader) -> None:
+    _, faults = read(declared="{file: crew.tsv, person: pupil, name: called}")
+    (fault,) = faults
+    assert fault.found == "there is no column 'pupil'"
+    assert fault.mend.endswith("; write the right one as `person: ...` in roster")
+
+
 def test_ids_stay_text_and_rows_keep_their_order(read: Reader) -> None:
     roster, faults = read("NA\tKim Lee\tnorth", "007\tÄnna Berg\tnorth", "12\tKim Lee\tsouth")
     assert roster == (

@@ -16,7 +16,7 @@ def read(
     raw = content.encode() if isinstance(content, str) else content
     (folder / name).write_bytes(raw)
     faults = Faults()
-    return read_table(folder / name, f"data/{name}", needed, faults), list(faults)
+    return read_table(folder / name, f"data/{name}", dict.fromkeys(needed, ""), faults), list(faults)
 
 
 def kinds(faults: list[Fault]) -> list[tuple[str, str]]:

@@ -24,6 +24,9 @@ def read_answers(study: Study, question_name: str, faults: Faults) -> Answers | 
     if asked is None:
         raise ValueError("this study asks no questions")
     question = asked.questions[question_name]
-    needed = (question.chooser, question.chosen) if question.layout == "long" else (question.chooser,)
+    here = f"questionnaire.questions.{question_name}"
+    needed = {question.chooser: f"{here}.chooser"}
+    if question.layout == "long":
+        needed |= {question.chosen: f"{here}.chosen"}
     table = read_table(study.path(question.file), question.file, needed, faults)
     return None if table is None else LAYOUTS[question.layout](question_name, question, table, faults)
