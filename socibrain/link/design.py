@@ -75,22 +75,35 @@ def make_designs(
     made: list[Design | Refused] = []
     for hypothesis in hypotheses:
         try:
-            made.append(_design(sample.table, hypothesis, codes.astype(np.intp), options))
+            if sample.table.empty:
+                raise _Unanswerable(f"nobody has all columns that the family asks for: {sample.nobody}")
+            notes = _tautology(sample, hypothesis)
+            made.append(_design(sample.table, hypothesis, codes.astype(np.intp), options, notes))
         except _Unanswerable as why:
             made.append(Refused(hypothesis, str(why), len(sample.table), len(site_names)))
     return tuple(made)
 
 
-def _design(table: pd.DataFrame, hypothesis: Hypothesis, sites: Codes, options: LinkOptions) -> Design:
+def _tautology(sample: Sample, hypothesis: Hypothesis) -> list[str]:
+    """What to say of an outcome and a predictor that are measured on one network."""
+    network = sample.networks.get(hypothesis.outcome)
+    if network is None or network != sample.networks.get(hypothesis.predictor):
+        return []
+    return [
+        f"outcome and predictor are computed from the same network ('{network}'): "
+        "they go together by construction, and p says nothing about people"
+    ]
+
+
+def _design(
+    table: pd.DataFrame, hypothesis: Hypothesis, sites: Codes, options: LinkOptions, notes: list[str]
+) -> Design:
     if hypothesis.one_sided and hypothesis.direction is None:
         raise _Unanswerable("a one-sided test needs a direction")
     if hypothesis.outcome == hypothesis.predictor:
         raise _Unanswerable("outcome and predictor are the same column")
-    if table.empty:
-        raise _Unanswerable("nobody has all columns that the family asks for")
     outcome = _asked_numbers(table, hypothesis.outcome)
     predictor = _asked_numbers(table, hypothesis.predictor)
-    notes: list[str] = []
     adjustments = _adjustments(table, hypothesis.adjust, notes)
     n_sites = int(sites.max()) + 1
     parts = _within_parts(adjustments, sites, notes)

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections import Counter
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from numbers import Real
 
@@ -24,11 +25,15 @@ class Sample:
     """People with everything that a family of hypotheses asks for, and everyone else with a reason.
 
     ``table`` has one row per person of the sample, sorted by site then person, indexed from 0.
-    ``left_out`` has columns family, person, site, reason.
+    ``left_out`` has columns family, person, site, reason.  ``networks`` names, for each column
+    asked for that is a measure, the question or brain input it is computed from.  ``nobody`` says
+    why the sample is empty, '' when it is not.
     """
 
     table: pd.DataFrame
     left_out: pd.DataFrame
+    networks: Mapping[str, str]
+    nobody: str
 
 
 def draw_sample(cohort: Cohort, hypotheses: Sequence[Hypothesis], *, visit: str, family: str) -> Sample:
@@ -55,7 +60,9 @@ def draw_sample(cohort: Cohort, hypotheses: Sequence[Hypothesis], *, visit: str,
     table = rows[~lost].sort_values(["site", "person"], ignore_index=True)
     gone = everyone[~everyone["person"].isin(table["person"])]
     left_out = gone.assign(family=family, reason=[reasons[person] for person in gone["person"]])
-    return Sample(table, left_out[LEFT_OUT].reset_index(drop=True))
+    networks = {name: cohort.columns[name].origin for name in columns if _is_measure(cohort, name)}
+    nobody = _why_nobody(cohort, rows["person"], missing, visit) if table.empty else ""
+    return Sample(table, left_out[LEFT_OUT].reset_index(drop=True), networks, nobody)
 
 
 def numbers(column: pd.Series) -> Array | None:
@@ -92,6 +99,29 @@ def _why(cohort: Cohort, name: str, person: str, visit: str) -> str:
     mine &= ~elsewhere.astype(bool)
     told = list(dict.fromkeys(ledger.loc[mine, "reason"]))
     return ", ".join(told) if told else f"'{name}': undefined ({about.undefined})"
+
+
+def _why_nobody(cohort: Cohort, people: pd.Series, missing: pd.DataFrame, visit: str) -> str:
+    """Which columns keep everyone out: those that nobody has or, when there are none, all of them."""
+    if people.empty:
+        return f"there is no usable scan at visit '{visit}'"
+    told = []
+    for name in missing.columns[missing.all().to_numpy()]:
+        whys = Counter(_why(cohort, name, person, visit) for person in people)
+        why, times = whys.most_common(1)[0]
+        why = why.removeprefix(f"'{name}': ")
+        often = "" if times == len(people) else f" ({times} of {len(people)} people)"
+        told.append(f"'{name}' has no value for anybody: {why}{often}")
+    if told:
+        return "; ".join(told)
+    has = (~missing).sum()
+    return "each has values, never all for one person of a site: " + ", ".join(
+        f"'{name}' for {has[name]} of {len(people)} people" for name in missing.columns
+    )
+
+
+def _is_measure(cohort: Cohort, name: str) -> bool:
+    return name in cohort.columns and cohort.columns[name].measure != ""
 
 
 def _from_a_scan(cohort: Cohort, name: str) -> bool:

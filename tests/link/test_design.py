@@ -4,6 +4,7 @@ import numpy as np
 import pandas as pd
 import pytest
 
+from socibrain.cohort.table import Column
 from socibrain.link.design import Design, Refused, make_designs
 from socibrain.link.options import LinkOptions
 from socibrain.link.sample import draw_sample
@@ -131,12 +132,36 @@ def test_true_and_false_are_numbers() -> None:
             "outcome 'y' follows from the predictor without",
         ),
         ({}, ask("y", "y"), "outcome and predictor are the same column"),
-        ({"x": np.nan}, ask(), "nobody has all columns"),
+        (
+            {"x": np.nan},
+            ask(),
+            "nobody has all columns that the family asks for: 'x' has no value for anybody: missing",
+        ),
         ({}, ask(one_sided=True), "a one-sided test needs a direction"),
     ],
 )
 def test_refusals(change, hypothesis, reason: str) -> None:
     assert reason in reason_of(made_persons().assign(**change), hypothesis)
+
+
+def test_outcome_and_predictor_of_one_network_go_together_by_construction() -> None:
+    persons = made_persons().rename(columns={"y": "conn.a", "x": "conn.b", "z": "advice.c"})
+    columns = tuple(
+        Column(name, name, "", "", "", "", "", name.split(".")[1], name.split(".")[0], None, None)
+        for name in ("conn.a", "conn.b", "advice.c")
+    )
+    options = LinkOptions(seed=1, alpha=0.05, shuffles=99, sites="random", visit="")
+    asked = [
+        ask("conn.a", "conn.b"), ask("conn.a", "advice.c"), ask("conn.a", "advice.c", "conn.b"),
+        ask("other", "conn.b"),
+    ]  # fmt: skip
+    sample = draw_sample(cohort_of(persons, columns=columns), asked, visit="", family="all")
+    together = (
+        "outcome and predictor are computed from the same network ('conn'): "
+        "they go together by construction, and p says nothing about people"
+    )
+    told = [together in design.notes for design in make_designs(sample, asked, options)]
+    assert told == [True, False, False, False]
 
 
 def test_constant_predictor_points_to_the_site_scale() -> None:

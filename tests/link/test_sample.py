@@ -37,6 +37,11 @@ def sample_of(*hypotheses, visit="1"):
     return draw_sample(cohort, hypotheses, visit=visit, family="first")
 
 
+def empty_site() -> SocialNetwork:
+    nobody = np.zeros((0, 0), dtype=bool)
+    return SocialNetwork("s", "advice", (), nobody, np.zeros(0, dtype=bool), (), "either")
+
+
 def test_everyone_is_in_or_has_a_reason() -> None:
     sample = sample_of(
         ask("rest.strength", "advice.constraint", "age"), ask("rest.strength", "advice.constraint", "sex")
@@ -56,13 +61,43 @@ def test_people_without_a_scan_count_where_no_brain_is_asked_for() -> None:
 
 
 def test_the_visit_does_not_matter_where_nothing_comes_from_a_scan() -> None:
-    nobody = np.zeros((0, 0), dtype=bool)
-    network = SocialNetwork("s", "advice", (), nobody, np.zeros(0, dtype=bool), (), "either")
     columns = (column("rest.strength", "never"), column("advice.constraint", "no contacts"))
-    cohort = replace(cohort_of(PERSONS, columns=columns), social=(network,))
+    cohort = replace(cohort_of(PERSONS, columns=columns), social=(empty_site(),))
     for asked, people in (("advice.constraint", "acdef"), ("rest.strength", "af")):
         sample = draw_sample(cohort, [ask("age", asked)], visit="1", family="first")
         assert "".join(sample.table["person"]) == people
+
+
+def test_an_empty_sample_says_which_column_nobody_has() -> None:
+    persons = PERSONS.assign(**{"advice.constraint": np.nan})
+    columns = (column("rest.strength", "never"), column("advice.constraint", "no contacts"))
+    cohort = cohort_of(persons, columns=columns)
+    sample = draw_sample(cohort, [ask("rest.strength", "advice.constraint")], visit="1", family="first")
+    assert sample.nobody == "'advice.constraint' has no value for anybody: undefined (no contacts)"
+    ledger = pd.DataFrame(
+        [["answered", "social", person, "s", "", "did not answer"] for person in "abc"], columns=LEDGER
+    )
+    cohort = replace(cohort, ledger=ledger, social=(empty_site(),))
+    sample = draw_sample(cohort, [ask("age", "advice.constraint")], visit="1", family="first")
+    assert sample.nobody == ("'advice.constraint' has no value for anybody: did not answer (3 of 6 people)")
+
+
+def test_columns_that_nobody_has_together_are_counted() -> None:
+    persons = PERSONS.assign(age=[1.0, *[np.nan] * 5], sex=[None, *"mmm", "w", "w"])
+    sample = draw_sample(cohort_of(persons), [ask("age", "sex")], visit="1", family="first")
+    assert sample.nobody == (
+        "each has values, never all for one person of a site: "
+        "'age' for 1 of 6 people, 'sex' for 5 of 6 people"
+    )
+    assert sample_of(ask("rest.strength", "age")).nobody == ""
+
+
+def test_nobody_at_a_visit() -> None:
+    persons = PERSONS[PERSONS["visit"] == "1"]
+    columns = (column("rest.strength", "never"),)
+    cohort = cohort_of(persons, columns=columns)
+    sample = draw_sample(cohort, [ask("rest.strength", "age")], visit="2", family="first")
+    assert sample.nobody == "there is no usable scan at visit '2'"
 
 
 def test_another_visit_has_other_people() -> None:
