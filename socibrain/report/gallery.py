@@ -2,8 +2,11 @@
 
 from __future__ import annotations
 
+from collections import Counter
 from collections.abc import Callable
 from functools import partial
+
+import pandas as pd
 
 from socibrain.cohort.table import Column
 from socibrain.link.finding import Finding
@@ -12,10 +15,11 @@ from socibrain.report.figures.flow import flow_figure
 from socibrain.report.figures.look import Drawing, as_png, our_look
 from socibrain.report.figures.null import null_figure
 from socibrain.report.figures.person_by_person import person_figure
-from socibrain.report.figures.site_network import choose_site, network_figure
+from socibrain.report.figures.site_network import DrawnSite, choose_site, network_figure
 from socibrain.report.figures.spread import sites_with_enough, spread_figure
 from socibrain.report.figures.systems import systems_figure
 from socibrain.report.material import ReportInput
+from socibrain.report.notation import is_small
 from socibrain.report.words import spoken
 
 Gallery = dict[str, Callable[[], Drawing]]
@@ -92,13 +96,36 @@ def region_column(material: ReportInput) -> str:
     return next((name for name in names if name.endswith(".participation")), names[0] if names else "")
 
 
-def _network(material: ReportInput) -> Gallery:
+def network_site(material: ReportInput) -> DrawnSite | None:
+    """The site whose network is drawn; None where there is none to draw."""
     if not material.questions:
-        return {}
+        return None
     question, column = network_position(material)
-    site = choose_site(material, question=question, column=column)
+    return choose_site(material, question=question, column=column)
+
+
+def split_in_two(finding: Finding, material: ReportInput) -> str:
+    """Predictor or outcome of at most two values, one of which one to four people of a site share.
+
+    Panels by site would tell who they are.  The column's name, '' where there is none.
+    """
+    persons = material.cohort.persons
+    linked = persons["visit"].isin([shown_visit(material), ""])
+    rows = pd.concat([persons[linked], persons[~linked]])
+    for name in (finding.hypothesis.predictor, finding.hypothesis.outcome):
+        if name in rows and rows[name].nunique() <= 2:
+            known = rows[rows[name].notna()].drop_duplicates("person").set_index("person")[name]
+            people = Counter(zip(finding.sites, known.reindex(list(finding.people)), strict=True))
+            if any(map(is_small, people.values())):
+                return name
+    return ""
+
+
+def _network(material: ReportInput) -> Gallery:
+    site = network_site(material)
     if site is None:
         return {}
+    _, column = network_position(material)
     label = spoken(column, material.cohort.columns) if column else ""
     return {"network": partial(network_figure, site, size_label=label)}
 
@@ -135,6 +162,6 @@ def _finding(finding: Finding, material: ReportInput) -> Gallery:
     }
     if finding.null.size:
         found[f"null-{asked.id}"] = partial(null_figure, finding)
-    if finding.n_sites > 1 and drawn_sites(finding):
+    if finding.n_sites > 1 and drawn_sites(finding) and not split_in_two(finding, material):
         found[f"sites-{asked.id}"] = partial(site_panels, finding)
     return found

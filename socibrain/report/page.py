@@ -12,20 +12,32 @@ from socibrain.link.finding import Finding, Findings
 from socibrain.report import tables
 from socibrain.report.figures.by_site import drawn_sites
 from socibrain.report.figures.look import as_svg, colour_variables, our_look
-from socibrain.report.gallery import Gallery, gallery, network_position, shown_visit
+from socibrain.report.gallery import (
+    Gallery,
+    gallery,
+    network_position,
+    network_site,
+    shown_visit,
+    split_in_two,
+)
 from socibrain.report.material import ReportInput
 from socibrain.report.methods import describe_methods
 from socibrain.report.provenance import read_record
-from socibrain.report.words import Answer, answer
+from socibrain.report.words import Answer, answer, spoken
 
 
 @dataclass(frozen=True)
 class AnsweredHypothesis:
-    """One hypothesis on the page: its answer, its numbers, names of its figures."""
+    """One hypothesis on the page: its answer, its numbers, what its figures need said.
+
+    ``two_values`` is the measure for whose sake sites are not drawn apart, '' where they are.
+    """
 
     answer: Answer
     numbers: tuple[tuple[str, str], ...]
     undrawn_sites: int
+    two_values: str
+    one_sided: bool
     readings: tuple[tuple[str, str], ...]
 
 
@@ -45,6 +57,7 @@ def render_report(material: ReportInput) -> str:
         lstrip_blocks=True,
     )
     question = network_position(material)[0] if material.questions else ""
+    site = network_site(material)
     return room.get_template("page.html.j2").render(
         material=material,
         style=_style(),
@@ -52,6 +65,7 @@ def render_report(material: ReportInput) -> str:
         spreads=[name for name in drawn if name.startswith("spread-")],
         visit=shown_visit(material),
         network_question=question.replace("_", " "),
+        few_silent=site is not None and site.few_silent,
         answered=_answered(findings, material),
         glance=tables.glance(material),
         sites=tables.site_rows(material, question),
@@ -87,10 +101,17 @@ def _answered(findings: Findings | None, material: ReportInput) -> list[Answered
             answer=answer(finding, findings, material.cohort.columns),
             numbers=tuple(tables.numbers_of(finding, findings)),
             undrawn_sites=finding.n_sites - len(drawn_sites(finding)),
+            two_values=_two_values(finding, material),
+            one_sided=finding.hypothesis.one_sided,
             readings=tuple(_readings(finding, material)),
         )
         for finding in findings.findings
     ]
+
+
+def _two_values(finding: Finding, material: ReportInput) -> str:
+    name = split_in_two(finding, material) if finding.n_sites > 1 else ""
+    return spoken(name, material.cohort.columns) if name else ""
 
 
 def _readings(finding: Finding, material: ReportInput) -> list[tuple[str, str]]:

@@ -3,25 +3,32 @@
 from __future__ import annotations
 
 import itertools
+from collections import Counter
+from dataclasses import replace
 
 import numpy as np
 import pandas as pd
 import pytest
 
+from socibrain.link.finding import Finding
 from socibrain.report.figures.by_site import drawn_sites
 from socibrain.report.figures.flow import read_steps
 from socibrain.report.figures.look import AT_NIGHT, CLASSES, INK, MAIN, OTHERS, PAPER, SHAPES, SIGN, SOFT
 from socibrain.report.figures.person_by_person import person_figure
 from socibrain.report.figures.site_network import (
     OTHER,
+    DrawnSite,
     choose_site,
     class_styles,
     fold_classes,
     network_figure,
 )
 from socibrain.report.figures.systems import systems_figure
+from socibrain.report.gallery import gallery, split_in_two
+from socibrain.report.material import ReportInput
 from socibrain.report.notation import breakdown, share
-from tests.report.made_study import finding, made_flow, made_material
+from socibrain.report.page import render_report
+from tests.report.made_study import finding, findings, made_flow, made_material
 
 # Machado, Oliveira & Fernandes (2009), full severity, in linear light; from memory.
 SIGHT = {
@@ -106,7 +113,7 @@ def test_the_drawn_site_holds_everyone_and_no_name() -> None:
     site = choose_site(material, question="advice", column="advice.constraint")
     assert site is not None
     drawing = network_figure(site, size_label="constraint (advice)")
-    assert f"{len(site.ties)} people" in drawing.alternative
+    assert str(len(site.ties)) not in drawing.alternative
     people = [line for line in drawing.figure.axes[0].lines if line.get_marker() != "None"]
     assert len(people) == len(site.ties)
     mutual = np.triu((site.ties * site.ties.T), 1).sum()
@@ -114,7 +121,62 @@ def test_the_drawn_site_holds_everyone_and_no_name() -> None:
     one_way = site.ties.sum() - 2 * mutual
     assert len(drawing.figure.axes[0].patches) == one_way
     hollow = [line for line in people if line.get_markerfacecolor() == PAPER]
-    assert len(hollow) == (~site.answered).sum()
+    assert len(hollow) == (~site.answered).sum() == 0
+
+
+def silenced(site: DrawnSite, silent: int) -> DrawnSite:
+    """The site as if its first people had not answered."""
+    answered = np.arange(len(site.ties)) >= silent
+    return replace(site, ties=site.ties * answered[:, None], answered=answered)
+
+
+@pytest.mark.parametrize("silent", [0, 1, 4, 5, 20, 21, 24])
+def test_people_who_did_not_answer_are_marked_only_where_they_and_the_others_are_many(silent: int) -> None:
+    site = choose_site(made_material(), question="advice", column="advice.constraint")
+    assert site is not None
+    assert len(site.ties) == 25
+    site = silenced(site, silent)
+    drawing = network_figure(site, size_label="")
+    axes = drawing.figure.axes[0]
+    people = [line for line in axes.lines if line.get_marker() != "None"]
+    hollow = [line for line in people if line.get_markerfacecolor() == PAPER]
+    legend = [text.get_text() for text in drawing.figure.legends[0].get_texts()]
+    marked = silent if silent in (5, 20) else 0
+    assert len(people) == 25
+    assert len(hollow) == marked
+    assert ("did not answer" in legend) == ("hollow" in drawing.alternative) == (marked > 0)
+    few = silent not in (0, 5, 20)
+    assert site.few_silent == few
+    assert ("one named the other" in legend) == bool(axes.patches) == (not few)
+    if few:
+        pairs = np.triu(np.maximum(site.ties, site.ties.T), 1).sum()
+        assert len(axes.lines) - len(people) == pairs
+
+
+def test_the_drawn_site_is_one_that_gives_nobody_away() -> None:
+    material = made_material()
+    networks = [
+        replace(each, answered=np.arange(len(each.people)) >= (2 if each.site != "Kelp Sound" else 6))
+        for each in material.cohort.social
+    ]
+    material = replace(material, cohort=replace(material.cohort, social=tuple(networks)))
+    site = choose_site(material, question="advice", column="")
+    assert site is not None
+    assert (~site.answered).sum() == 6
+    few = replace(material, cohort=replace(material.cohort, social=tuple(networks[:3])))
+    shown = choose_site(few, question="advice", column="")
+    assert shown is not None
+    assert shown.few_silent
+
+
+def test_who_has_no_position_is_not_told_by_size() -> None:
+    site = choose_site(made_material(), question="advice", column="advice.constraint")
+    assert site is not None
+    position = np.arange(25.0)
+    position[:3] = np.nan
+    axes = network_figure(replace(site, position=position), size_label="x").figure.axes[0]
+    sizes = [line.get_markersize() for line in axes.lines if line.get_marker() != "None"]
+    assert sorted(sizes.count(size) for size in set(sizes)) == [7, 7, 11]
 
 
 def test_no_site_is_drawn_where_none_has_ties() -> None:
@@ -150,6 +212,37 @@ def test_the_line_and_band_are_the_slope_and_its_interval_in_raw_units() -> None
 def test_sites_with_fewer_than_five_people_get_no_panel() -> None:
     assert drawn_sites(finding(n=12 * 5 + 3)) == drawn_sites(finding(n=12 * 5))
     assert drawn_sites(finding(n=12 * 5 - 1))[-1] != "Low Light"
+
+
+def halved(finding_: Finding, members: int) -> ReportInput:
+    """Material where each site has that many members, the rest of each site none."""
+    material, seen = made_material(findings=findings([finding_])), Counter[str]()
+    persons = material.cohort.persons.copy()
+    persons["advice.club"] = np.nan
+    for place, site in enumerate(finding_.sites):
+        persons.loc[place, ["person", "site", "visit"]] = [finding_.people[place], site, "1"]
+        persons.loc[place, "advice.club"] = float(seen[site] < members)
+        seen[site] += 1
+    return replace(material, cohort=replace(material.cohort, persons=persons))
+
+
+@pytest.mark.parametrize(("members", "panels"), [(0, True), (3, False), (5, True), (11, False), (14, True)])
+@pytest.mark.parametrize("side", ["predictor", "outcome"])
+def test_sites_are_not_drawn_apart_where_few_share_one_of_two_values(
+    members: int, panels: bool, side: str
+) -> None:
+    asked = finding(**{side: "advice.club"})  # 14 people a site
+    material = halved(asked, members)
+    assert ("sites-brokers" in gallery(material)) == panels
+    assert split_in_two(asked, material) == ("" if panels else "advice.club")
+    assert ("Sites are not drawn apart" in render_report(material)) == (not panels)
+
+
+def test_sites_are_drawn_apart_where_a_measure_has_many_values() -> None:
+    asked = finding(predictor="advice.club")
+    material = halved(asked, 3)
+    material.cohort.persons.loc[0, "advice.club"] = 2.0
+    assert "sites-brokers" in gallery(material)
 
 
 def test_regions_show_their_mean_over_people() -> None:

@@ -37,7 +37,7 @@ class DrawnSite:
     """One site's network ready to be drawn: ties (n, n) 0/1, and n answers, classes and sizes.
 
     ``classes`` are class names with small ones folded together; ``position`` is NaN where
-    undefined.
+    undefined.  With ``few_silent`` (or few who answered) nothing drawn may tell them from the others.
     """
 
     question: str
@@ -46,12 +46,17 @@ class DrawnSite:
     classes: tuple[str, ...]
     position: Array
 
+    @property
+    def few_silent(self) -> bool:
+        """Whether so few people did not answer, or so few did, that their number is hidden."""
+        return _few_silent(self.answered)
+
 
 def choose_site(material: ReportInput, *, question: str, column: str) -> DrawnSite | None:
     """The site that shows most classes and, among those, has the middle number of people.
 
-    None when no site has ties and between 5 and 150 people.  ``column`` is the position that gives
-    the sizes.
+    Sites where one to four people did not answer come last.  None when no site has ties and between
+    5 and 150 people.  ``column`` is the position that gives the sizes.
     """
     networks = [
         network
@@ -65,6 +70,7 @@ def choose_site(material: ReportInput, *, question: str, column: str) -> DrawnSi
     chosen = min(
         networks,
         key=lambda network: (
+            _few_silent(network.answered),
             -len(set(fold_classes(network.roles))),
             abs(len(network.people) - middle),
             network.site,
@@ -93,25 +99,30 @@ def fold_classes(roles: Sequence[str | None]) -> tuple[str, ...]:
 
 
 def network_figure(site: DrawnSite, *, size_label: str) -> Drawing:
-    """People as shapes by class, larger with a higher position, hollow without answers."""
-    directed = bool((site.ties != site.ties.T).any())
-    places = _places(site.ties)
+    """People as shapes by class, larger with a higher position, hollow without answers.
+
+    Where few did not answer they are drawn like everybody, and no tie shows who named whom: the
+    people from whom no tie goes out would be known.
+    """
+    ties = np.maximum(site.ties, site.ties.T) if site.few_silent else site.ties
+    hollow = ~site.answered if not site.few_silent else np.zeros(len(ties), dtype=bool)
+    directed = bool((ties != ties.T).any())
+    places = _places(ties)
     figure, axes = blank(6.4, 5.6)
     axes.set_axis_off()
     axes.set_aspect("equal")
-    _draw_ties(axes, site.ties, places)
+    _draw_ties(axes, ties, places)
     styles = class_styles(site.classes)
     areas = _areas(site.position)
     for person in np.lexsort((places[:, 1], places[:, 0])):
         colour, shape = styles[site.classes[person]]
-        hollow = not site.answered[person]
         axes.plot(
             [places[person, 0]], [places[person, 1]], shape, ms=np.sqrt(areas[person]), mew=1.8,
-            mfc=PAPER if hollow else colour, mec=colour if hollow else PAPER, zorder=3,
+            mfc=PAPER if hollow[person] else colour, mec=colour if hollow[person] else PAPER, zorder=3,
         )  # fmt: skip
     axes.margins(0.08)
     figure.legend(
-        handles=_legend(styles, directed=directed, hollow=not site.answered.all(), size_label=size_label),
+        handles=_legend(styles, directed=directed, hollow=bool(hollow.any()), size_label=size_label),
         loc="outside lower center", ncols=3, frameon=False, fontsize=9, labelcolor=INK,
         handletextpad=0.5, columnspacing=1.6,
     )  # fmt: skip
@@ -143,14 +154,16 @@ def _places(ties: Array) -> Array:
 
 
 def _areas(position: Array) -> Array:
-    """Marker areas: from the smallest to the largest position, smallest where undefined."""
-    least, most = 60.0, 430.0
+    """Marker areas of the lower, middle and upper third; whoever has no position is in the middle.
+
+    >>> _areas(np.array([1, 2, 3, 4, np.nan, 5, 6])).tolist()
+    [60.0, 60.0, 170.0, 170.0, 170.0, 380.0, 380.0]
+    """
+    small, middle, large = 60.0, 170.0, 380.0
     if not np.isfinite(position).any():
-        return np.full(position.size, 150.0)
-    low, high = np.nanmin(position), np.nanmax(position)
-    if high == low:
-        return np.full(position.size, 150.0)
-    return least + (most - least) * np.nan_to_num((position - low) / (high - low))
+        return np.full(position.size, middle)
+    low, high = np.nanquantile(position, [1 / 3, 2 / 3])
+    return np.where(position < low, small, np.where(position > high, large, middle))
 
 
 def _draw_ties(axes: Axes, ties: Array, places: Array) -> None:
@@ -201,8 +214,13 @@ def _legend(
 
 
 def _alternative(site: DrawnSite, size_label: str) -> str:
-    sizes = f", larger with higher {size_label}" if size_label else ""
+    sizes = f", in three sizes that go up with {size_label}" if size_label else ""
+    hollow = "" if site.few_silent or site.answered.all() else "people who did not answer are hollow; "
     return (
-        f"Network of one site of {len(site.ties)} people by the question {site.question}: a shape for each "
-        f"person{sizes}; people who did not answer are hollow; people tied to nobody stand below."
+        f"Network of one site by the question {site.question}: a shape for each person{sizes}; {hollow}"
+        "people tied to nobody stand below."
     )
+
+
+def _few_silent(answered: NDArray[np.bool_]) -> bool:
+    return is_small(int((~answered).sum())) or is_small(int(answered.sum()))
