@@ -5,12 +5,15 @@ from __future__ import annotations
 import re
 import shutil
 from pathlib import Path
+from typing import Any, get_args
 
 import pytest
+from pydantic import BaseModel
 
 import socibrain
 from socibrain.cli import entry, main
 from socibrain.plan.planfile import read_plan
+from socibrain.sources.study import StudyFile, read_study
 
 ROOT = Path(__file__).parents[1]
 README = (ROOT / "README.md").read_text(encoding="utf-8")
@@ -92,3 +95,40 @@ def test_the_plan_of_the_readme_is_a_plan(folder: Path) -> None:
     (folder / "plan.yaml").write_text(text, encoding="utf-8")
     (hypothesis,) = read_plan(folder / "plan.yaml").says.hypotheses
     assert hypothesis.predictor == "advice.constraint"
+
+
+def written_out(entry: type[BaseModel]) -> set[str]:
+    """Every entry that a document may hold, at any depth."""
+    names = set(entry.model_fields)
+    for field in entry.model_fields.values():
+        for kind in parts(field.annotation):
+            names |= written_out(kind)
+    return names
+
+
+def parts(annotation: object) -> list[type[BaseModel]]:
+    if isinstance(annotation, type) and issubclass(annotation, BaseModel):
+        return [annotation]
+    return [kind for each in get_args(annotation) for kind in parts(each)]
+
+
+def test_the_study_file_of_the_readme_is_one_and_is_whole(tmp_path: Path) -> None:
+    (text,) = re.findall(r"^```yaml\n(socibrain: 1\nstudy: .*?)^```", README, re.MULTILINE | re.DOTALL)
+    (tmp_path / "study.yaml").write_text(text, encoding="utf-8")
+    assert read_study(tmp_path / "study.yaml").says.study == "coast"
+    missing = {name for name in written_out(StudyFile) if not re.search(rf"\b{name}:", text)}
+    assert missing == set()
+
+
+def test_the_python_of_the_readme_runs(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    """With fewer restarts than the demo declares, to be quick."""
+    for name in ("demo_cohort", "analyses"):
+        shutil.copytree(ROOT / name, tmp_path / name)
+    study = tmp_path / "demo_cohort" / "study.yaml"
+    study.write_text(study.read_text(encoding="utf-8").replace("restarts: 50", "restarts: 2"))
+    (code,) = re.findall(r"^```python\n(.*?)^```", README, re.MULTILINE | re.DOTALL)
+    monkeypatch.chdir(tmp_path)
+    names: dict[str, Any] = {}
+    exec(code, names)
+    assert names["findings"].table["id"].iloc[0] == "constraint_participation"
+    assert (tmp_path / "report.html").read_text(encoding="utf-8").count("<svg") >= 6

@@ -13,7 +13,7 @@ LEDGER_SAYS = {
     "stage": "step of the flow that is not reached, or the measure or family that has no value",
     "side": "social, brain or link",
     "person": "person's id, empty when a whole site is meant",
-    "site": "site",
+    "site": "the person's site",
     "visit": "visit, empty when the person as a whole is meant",
     "reason": "why",
 }
