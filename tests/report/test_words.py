@@ -63,6 +63,43 @@ def test_no_association_in_a_one_sided_test_names_the_direction() -> None:
     assert "was found within sites in the predicted direction (negative); the interval" in said.sentence
 
 
+ONE_SIDE = "The test is one-sided: it looks for a negative association only"
+BORDERLINE = "The interval includes zero although p is small: read this as a borderline finding."
+
+
+def one_sided(estimate: float, ci: tuple[float, float], p: float, p_family: float | None = None) -> Answer:
+    family = p if p_family is None else p_family
+    return told(finding(estimate=estimate, ci=ci, p=p, p_family=family, direction="negative", one_sided=True))
+
+
+def test_a_one_sided_test_is_told_to_be_one() -> None:
+    said = one_sided(-0.31, (-0.45, -0.17), 0.001)
+    assert "(95 % interval −0.45 to −0.17), one-sided p = 0.001;" in said.numbers
+    assert f"{ONE_SIDE}. The interval has two sides." in said.notes
+    assert len(said.notes) == 4
+    both = told(finding(direction="negative"))
+    assert "one-sided" not in f"{both.numbers} {both.notes}"
+
+
+@pytest.mark.parametrize(("p", "borderline"), [(0.049, False), (0.0251, False), (0.025, True), (0.01, True)])
+def test_an_interval_with_zero_goes_with_a_plain_one_sided_result(p: float, borderline: bool) -> None:
+    said = one_sided(-0.2, (-0.4, 0.01), p)
+    assert said.verdict == "found"
+    assert (BORDERLINE in said.notes) == borderline
+
+
+def test_a_slope_on_the_side_where_nobody_looked_is_said_to_be_there() -> None:
+    said = one_sided(0.31, (0.17, 0.45), 0.9995)
+    assert said.verdict == "not found"
+    assert f"{ONE_SIDE}; the slope lies on the other side, of which p says nothing." in said.notes
+    assert not any("falls short" in note for note in said.notes)
+
+
+def test_a_one_sided_result_that_only_the_correction_takes_away_is_told() -> None:
+    said = one_sided(-0.2, (-0.39, -0.01), 0.02, 0.06)
+    assert any("after correction for the family the evidence falls short" in note for note in said.notes)
+
+
 @pytest.mark.parametrize(("p_family", "verdict"), [(0.05, "found"), (0.0500001, "not found")])
 def test_alpha_itself_still_counts_and_nothing_above_it(p_family: float, verdict: str) -> None:
     said = told(finding(p=0.01, p_family=p_family))
