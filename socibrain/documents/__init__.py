@@ -13,7 +13,7 @@ from socibrain.documents.tree import Keys, Tree, read_tree
 from socibrain.documents.wording import members, model_faults, nearest
 from socibrain.errors import DocumentRefused, Fault
 
-__all__ = ["Document", "Entry", "Keys", "nearest", "read_document"]
+__all__ = ["Document", "Entry", "Keys", "OtherKind", "nearest", "read_document"]
 
 
 class Entry(BaseModel):
@@ -46,14 +46,28 @@ class Document(Generic[M]):
         return self._tree.fault(keys, kind, found, mend)
 
 
-def read_document(path: Path, model: type[M]) -> Document[M]:
+@dataclass(frozen=True)
+class OtherKind:
+    """Documents that may be given by mistake: those with an entry ``has`` and none called ``lacks``."""
+
+    has: str
+    lacks: str
+    found: str
+    mend: str
+
+
+def read_document(path: Path, model: type[M], *, mistaken: OtherKind | None = None) -> Document[M]:
     """Read one YAML document into ``model``.
+
+    A document that is ``mistaken`` for one is refused with one fault for the whole.
 
     Numbers remember how they are written: ``str`` of 007 is ``"007"``.  Raises `DocumentRefused`
     with every fault, in the order of the file, each with line and column and, where an entry is
     unknown, the nearest valid name.
     """
     tree = read_tree(path)
+    if mistaken and mistaken.has in tree.plain and mistaken.lacks not in tree.plain:
+        raise DocumentRefused(Fault(str(path), "", "other-kind", mistaken.found, mistaken.mend))
     try:
         content = model.model_validate(tree.plain)
     except ValidationError as error:

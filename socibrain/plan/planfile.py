@@ -9,10 +9,11 @@ from typing import Annotated, Any, Literal
 
 from pydantic import BeforeValidator, Field
 
-from socibrain.documents import Document, Entry, nearest, read_document
+from socibrain.documents import Document, Entry, OtherKind, nearest, read_document
 from socibrain.errors import DocumentRefused, Fault
 from socibrain.link.hypothesis import Hypothesis
 from socibrain.link.options import LinkOptions
+from socibrain.measures.catalogue import all_measures
 
 
 def _as_text(value: Any) -> Any:
@@ -69,12 +70,20 @@ class Plan:
         return LinkOptions(says.seed, says.alpha, says.shuffles, says.sites, visit)
 
 
+STUDY = OtherKind(
+    has="people",
+    lacks="hypotheses",
+    found="this is a study file, not a plan",
+    mend="give a plan, whose `study:` names this file; `socibrain audit` and `measure` take a study file",
+)
+
+
 def read_plan(path: str | Path) -> Plan:
     """Read a plan file.
 
     Raises `DocumentRefused` with every fault, each with line, column and how to mend it.
     """
-    plan = Plan(read_document(Path(path), PlanFile))
+    plan = Plan(read_document(Path(path), PlanFile, mistaken=STUDY))
     faults = _contradictions(plan)
     if faults:
         raise DocumentRefused(*faults)
@@ -134,8 +143,7 @@ def check_columns(plan: Plan, known: dict[str, bool]) -> None:
         for keys, name, must_count in places:
             here = ("hypotheses", number, *keys)
             if name not in known:
-                found = f"'{name}' is no measure or attribute of this study"
-                faults.append(plan.document.fault(here, "unknown-column", found, _nearest(name, known)))
+                faults.append(plan.document.fault(here, "unknown-column", *_unknown(name, known)))
             elif must_count and not known[name]:
                 found = f"'{name}' holds text"
                 mend = "name a column of numbers; declare it under people.numbers if it is one"
@@ -144,6 +152,16 @@ def check_columns(plan: Plan, known: dict[str, bool]) -> None:
         raise DocumentRefused(*faults)
 
 
-def _nearest(name: str, known: dict[str, bool]) -> str:
-    close = nearest(name, known)
-    return close if close.startswith("did you") else "`socibrain catalogue` lists the measures"
+def _unknown(name: str, known: dict[str, bool]) -> tuple[str, str]:
+    """What is wrong with a column that people do not have, and how to mend it."""
+    origin, _, word = name.partition(".")
+    measure = all_measures().get(word)
+    measured = {column.partition(".")[0] for column in known if "." in column}
+    listed = "`socibrain catalogue` lists the measures"
+    if measure is None or measure.scale == "person" or origin not in measured:
+        close = nearest(name, known)
+        mend = close if close.startswith("did you") else listed
+        return f"'{name}' is no measure or attribute of this study", mend
+    found = f"'{name}': '{word}' is measured by {measure.scale}; hypotheses here are about people"
+    mean = f"{origin}.mean_{word}"
+    return found, f"its person-scale companion is '{mean}'" if mean in known else listed

@@ -10,7 +10,7 @@ from typing import Annotated, Any, Literal
 
 from pydantic import BeforeValidator, Field, model_validator
 
-from socibrain.documents import Document, Entry, read_document
+from socibrain.documents import Document, Entry, OtherKind, read_document
 from socibrain.errors import DocumentRefused, Fault
 
 
@@ -202,12 +202,20 @@ class Study:
         return tuple(dict.fromkeys(files))
 
 
+PLAN = OtherKind(
+    has="hypotheses",
+    lacks="people",
+    found="this is a plan, not a study file",
+    mend="give the study file that its `study:` names; `socibrain link` takes a plan",
+)
+
+
 def read_study(path: str | Path) -> Study:
     """Read a study file.
 
     Raises `DocumentRefused` with every fault, each with line, column and how to mend it.
     """
-    study = Study(read_document(Path(path), StudyFile))
+    study = Study(read_document(Path(path), StudyFile, mistaken=PLAN))
     faults = list(_contradictions(study))
     if faults:
         raise DocumentRefused(*faults)

@@ -64,6 +64,32 @@ def test_two_hypotheses_of_one_name(tmp_path: Path) -> None:
         read_plan(write(tmp_path, twice))
 
 
+@pytest.mark.parametrize(
+    ("name", "found", "mend"),
+    [
+        ("advice.site_density", "'site_density' is measured by site; hypotheses", "`socibrain catalogue`"),
+        ("rest.strength", "'strength' is measured by region;", "companion is 'rest.mean_strength'"),
+        ("other.strength", "is no measure or attribute of this study", "did you mean 'rest.mean_strength'?"),
+    ],
+)  # fmt: skip
+def test_measures_of_another_scale_are_told_as_such(tmp_path: Path, name: str, found: str, mend: str) -> None:
+    plan = read_plan(write(tmp_path, PLAN.replace("rest.modularity", name)))
+    known = {"rest.mean_strength": True, "advice.constraint": True, "age": True}
+    with pytest.raises(DocumentRefused) as refused:
+        check_columns(plan, known)
+    (fault,) = refused.value.faults
+    assert found in fault.found
+    assert mend in fault.mend
+
+
+def test_a_study_file_is_told_apart_from_a_plan(tmp_path: Path) -> None:
+    study = "socibrain: 1\nstudy: toy\ntitle: Toy\npeople: {file: people.tsv}\nbrain: {}\n"
+    with pytest.raises(DocumentRefused) as refused:
+        read_plan(write(tmp_path, study))
+    (fault,) = refused.value.faults
+    assert (fault.kind, fault.found) == ("other-kind", "this is a study file, not a plan")
+
+
 def test_unknown_columns_are_told_together(tmp_path: Path) -> None:
     plan = read_plan(write(tmp_path, PLAN.replace("rest.modularity", "rest.modularty")))
     known = {"rest.modularity": True, "advice.constraint": False}

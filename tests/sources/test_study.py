@@ -152,3 +152,12 @@ def test_misspelt_entries_offer_the_right_one(refused: Refused, wrong: str, mend
 def test_another_format_number_is_refused(refused: Refused) -> None:
     (fault,) = refused(HEAD.replace("socibrain: 1", "socibrain: 2") + BRAIN)
     assert (fault.place, fault.found, fault.mend) == ("1:1", "socibrain: found 2", "write 1")
+
+
+def test_a_plan_is_told_apart_from_a_study_file(tmp_path: Path) -> None:
+    path = tmp_path / "plan.yaml"
+    path.write_text("socibrain: 1\nplan: p\nstudy: study.yaml\nquestion: q\nseed: 1\nhypotheses: []\n")
+    with pytest.raises(DocumentRefused) as refused:
+        read_study(path)
+    (fault,) = refused.value.faults
+    assert (fault.kind, fault.found) == ("other-kind", "this is a plan, not a study file")
