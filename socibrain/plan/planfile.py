@@ -163,5 +163,7 @@ def _unknown(name: str, known: dict[str, bool]) -> tuple[str, str]:
         mend = close if close.startswith("did you") else listed
         return f"'{name}' is no measure or attribute of this study", mend
     found = f"'{name}': '{word}' is measured by {measure.scale}; hypotheses here are about people"
-    mean = f"{origin}.mean_{word}"
-    return found, f"its person-scale companion is '{mean}'" if mean in known else listed
+    near = [
+        f"'{column}'" for column in known if column.startswith(f"{origin}.") and column.endswith(f"_{word}")
+    ]
+    return found, f"of people there is {' and '.join(near)}" if near else listed

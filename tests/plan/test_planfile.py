@@ -68,13 +68,15 @@ def test_two_hypotheses_of_one_name(tmp_path: Path) -> None:
     ("name", "found", "mend"),
     [
         ("advice.site_density", "'site_density' is measured by site; hypotheses", "`socibrain catalogue`"),
-        ("rest.strength", "'strength' is measured by region;", "companion is 'rest.mean_strength'"),
+        ("rest.strength", "'strength' is measured by region;", "of people there is 'rest.mean_strength'"),
+        ("rest.within_module_z", "by region", "there is 'rest.mean_within_module_z' and 'rest.largest_within"),
         ("other.strength", "is no measure or attribute of this study", "did you mean 'rest.mean_strength'?"),
     ],
 )  # fmt: skip
 def test_measures_of_another_scale_are_told_as_such(tmp_path: Path, name: str, found: str, mend: str) -> None:
     plan = read_plan(write(tmp_path, PLAN.replace("rest.modularity", name)))
-    known = {"rest.mean_strength": True, "advice.constraint": True, "age": True}
+    z = dict.fromkeys(("rest.mean_within_module_z", "rest.largest_within_module_z"), True)
+    known = {"rest.mean_strength": True, "advice.constraint": True, "age": True} | z
     with pytest.raises(DocumentRefused) as refused:
         check_columns(plan, known)
     (fault,) = refused.value.faults
