@@ -69,7 +69,7 @@ def test_two_hypotheses_of_one_name(tmp_path: Path) -> None:
     [
         ("advice.site_density", "'site_density' is measured by site; hypotheses", "`socibrain catalogue`"),
         ("rest.strength", "'strength' is measured by region;", "of people there is 'rest.mean_strength'"),
-        ("rest.within_module_z", "by region", "there is 'rest.mean_within_module_z' and 'rest.largest_within"),
+        ("rest.within_module_z", "by region", "'rest.mean_within_module_z' and 'rest.largest_within"),
         ("other.strength", "is no measure or attribute of this study", "did you mean 'rest.mean_strength'?"),
     ],
 )  # fmt: skip

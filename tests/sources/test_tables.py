@@ -92,7 +92,7 @@ def test_a_missing_column_offers_the_nearest(tmp_path: Path) -> None:
 @pytest.mark.parametrize(("name", "kind"), [("none.tsv", "missing-file"), ("", "unreadable")])
 def test_what_is_no_file_is_refused(tmp_path: Path, name: str, kind: str) -> None:
     faults = Faults()
-    assert read_table(tmp_path / name, name, (), faults) is None
+    assert read_table(tmp_path / name, name, {}, faults) is None
     assert [fault.kind for fault in faults] == [kind]
 
 
