@@ -141,7 +141,7 @@ def finding_rows(findings: Findings, columns: Mapping[str, Column]) -> Rows:
             decimal(each.estimate),
             _interval(each.ci_low, each.ci_high),
             p_value(each.p_permutation, alpha),
-            p_value(each.p_family, alpha),
+            f"{p_value(each.p_family, alpha)}{_sided(each)}",
             BADGES[answer(each, findings, columns).verdict],
         )
         for each in findings.findings
@@ -163,8 +163,8 @@ def numbers_of(finding: Finding, findings: Findings) -> list[tuple[str, str]]:
         (f"{level(alpha)} interval", _interval(finding.ci_low, finding.ci_high, 3)),
         ("Slope in the units of the columns", short(finding.raw_estimate)),
         ("t (degrees of freedom)", f"{decimal(finding.statistic)} ({decimal(finding.df, 1)})"),
-        ("p by shuffling", p_value(finding.p_permutation, alpha)),
-        ("p in its family", p_value(finding.p_family, alpha)),
+        (f"p by shuffling{_sided(finding)}", p_value(finding.p_permutation, alpha)),
+        (f"p in its family{_sided(finding)}", p_value(finding.p_family, alpha)),
         (
             "Arrangements",
             f"{count(finding.shuffles)}{', all there are' if finding.exhaustive else ' shuffles'}",
@@ -183,6 +183,10 @@ def numbers_of(finding: Finding, findings: Findings) -> list[tuple[str, str]]:
     if finding.check:
         rows.append(("Largest difference from statsmodels", f"{finding.check.largest_difference:.1e}"))
     return [(what, number) for what, number in rows if number != "–"]
+
+
+def _sided(finding: Finding) -> str:
+    return ", one-sided" if finding.hypothesis.one_sided and not math.isnan(finding.p_family) else ""
 
 
 def _interval(low: float, high: float, places: int = 2) -> str:

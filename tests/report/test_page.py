@@ -242,6 +242,16 @@ def test_methods_of_fixed_sites_do_not_speak_of_random_ones() -> None:
     assert not any("Patterson" in work for work in methods.references)
 
 
+def test_a_one_sided_answer_says_so_wherever_its_p_stands() -> None:
+    one = finding(direction="negative", one_sided=True)
+    text = Outline(render_report(made_material(findings=findings([one])))).text
+    for words in ("one-sided p = 0.001", "0.001, one-sided", "p by shuffling, one-sided 0.0004",
+                  "p in its family, one-sided 0.001", "The test is one-sided"):  # fmt: skip
+        assert words in text
+    assert "dashed" not in text
+    assert "dashed: as far on the other side" in Outline(render_report(made_material())).text
+
+
 def test_cautions_are_always_there(outline: Outline) -> None:
     for words in (
         "may be used to diagnose anybody, or to choose or rank people",
