@@ -20,7 +20,8 @@ ROLE_WORDS = ("role", "position", "job", "rank", "duty", "function", "occupation
 VISIT_WORDS = ("visit", "session", "ses", "wave", "timepoint", "session_id")
 REGION_WORDS = ("name", "region", "label", "region_name")
 SYSTEM_WORDS = ("system", "network", "module", "lobe", "community")
-YES = ("yes", "y", "true", "1", "invited", "scanned", "done", "complete", "completed", "answered")
+YES = ("yes", "y", "true", "1", "invited", "scanned", "done", "complete", "completed", "answered", "present")
+NO = ("no", "n", "false", "0", "not invited", "not scanned", "refused", "missing", "absent", "incomplete")
 PEOPLE_FILES = ("participants", "people", "persons", "subjects", "members")
 MOST_BYTES = 20_000_000
 """Larger files are no tables of people or answers."""
@@ -113,8 +114,13 @@ def find_tables(
                 measured += [(table, column, word_column(table, VISIT_WORDS), each) for each in numbers]
             elif roster is None or table.file != roster[0].file:
                 unused.append(table)
-    if answered is None and people and (status := _status_column(*people)):
-        answered = (*people, status)
+    beside = [(each.table, each.chooser) for each in nominations]
+    for table, column in [*beside, *([people] if people else [])] if answered is None else ():
+        names_there = {each.chosen.rstrip("*") for each in nominations if each.table is table}
+        status = _status_column(table, column, tuple(names_there))
+        if status:
+            answered = (table, column, status)
+            break
     return FoundTables(
         people[0] if people else None,
         people[1] if people else "",
@@ -142,6 +148,13 @@ def yes_values(table: TextTable, column: str) -> tuple[str, ...]:
     """The entries of a column that say yes."""
     cells = dict.fromkeys(table.column(column))
     return tuple(cell for cell in cells if cell.casefold() in YES)
+
+
+def yes_or_no(table: TextTable, column: str) -> bool:
+    """Whether a column says yes of some people, and of all others no or nothing."""
+    said = {cell.casefold() for cell in table.column(column)}
+    told = {cell for cell in said if not is_missing(cell)}
+    return not told.isdisjoint(YES) and told <= {*YES, *NO} and len(said) > 1
 
 
 def values(table: TextTable, column: str) -> tuple[str, ...]:
@@ -221,14 +234,14 @@ def _nominations(
     return None
 
 
-def _status_column(table: TextTable, key: str) -> str | None:
-    """The column that says who answered."""
-    signs = ("answer", "respon", "status", "complet")
+def _status_column(table: TextTable, key: str, names: tuple[str, ...] = ()) -> str | None:
+    """The column that says who answered; columns whose name starts with one of ``names`` do not."""
+    signs = ("answer", "respon", "status", "complet", "present", "attend")
     cells = table.column(key)
     if len(set(cells)) < len(cells):
         return None
-    fits = (c for c in table.columns if c != key and any(sign in c.casefold() for sign in signs))
-    return next(fits, None)
+    others = [c for c in table.columns if c != key and not c.startswith(names)]
+    return next((c for c in others if any(sign in c.casefold() for sign in signs)), None)
 
 
 def _number_columns(table: TextTable, key: str) -> list[str]:
