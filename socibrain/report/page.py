@@ -66,6 +66,7 @@ def render_report(material: ReportInput) -> str:
         visit=shown_visit(material),
         network_question=question.replace("_", " "),
         few_silent=site is not None and site.few_silent,
+        some_silent=site is not None and not site.answered.all(),
         answered=_answered(findings, material),
         glance=tables.glance(material),
         sites=tables.site_rows(material, question),

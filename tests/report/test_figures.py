@@ -169,6 +169,20 @@ def test_the_drawn_site_is_one_that_gives_nobody_away() -> None:
     assert shown.few_silent
 
 
+@pytest.mark.parametrize(("silent", "marks"), [(0, 0), (2, 0), (6, 6)])
+def test_the_caption_tells_what_is_not_marked(silent: int, marks: int) -> None:
+    material = made_material(findings=None)
+    networks = [
+        replace(each, named=each.named * (np.arange(25) >= silent)[:, None], answered=np.arange(25) >= silent)
+        for each in material.cohort.social
+    ]
+    page = render_report(replace(material, cohort=replace(material.cohort, social=tuple(networks))))
+    caption = page[page.index("Neither its name nor who is who is told") :].split("</figcaption>")[0]
+    assert ("they are not marked" in caption) == (silent == 2)
+    assert ("known only from others’ answers" in caption) == (silent > 0)
+    assert ("people who did not answer are hollow" in page) == (marks > 0)
+
+
 def test_who_has_no_position_is_not_told_by_size() -> None:
     site = choose_site(made_material(), question="advice", column="advice.constraint")
     assert site is not None

@@ -117,8 +117,9 @@ def network_figure(site: DrawnSite, *, size_label: str) -> Drawing:
     for person in np.lexsort((places[:, 1], places[:, 0])):
         colour, shape = styles[site.classes[person]]
         axes.plot(
-            [places[person, 0]], [places[person, 1]], shape, ms=np.sqrt(areas[person]), mew=1.8,
-            mfc=PAPER if hollow[person] else colour, mec=colour if hollow[person] else PAPER, zorder=3,
+            [places[person, 0]], [places[person, 1]], shape, ms=np.sqrt(areas[person]), zorder=3,
+            mew=1.8 if hollow[person] else 0.8,
+            mfc=PAPER if hollow[person] else colour, mec=colour if hollow[person] else PAPER,
         )  # fmt: skip
     axes.margins(0.08)
     figure.legend(
@@ -157,9 +158,9 @@ def _areas(position: Array) -> Array:
     """Marker areas of the lower, middle and upper third; whoever has no position is in the middle.
 
     >>> _areas(np.array([1, 2, 3, 4, np.nan, 5, 6])).tolist()
-    [60.0, 60.0, 170.0, 170.0, 170.0, 380.0, 380.0]
+    [80.0, 80.0, 180.0, 180.0, 180.0, 380.0, 380.0]
     """
-    small, middle, large = 60.0, 170.0, 380.0
+    small, middle, large = 80.0, 180.0, 380.0
     if not np.isfinite(position).any():
         return np.full(position.size, middle)
     low, high = np.nanquantile(position, [1 / 3, 2 / 3])
