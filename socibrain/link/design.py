@@ -91,7 +91,7 @@ def _tautology(sample: Sample, hypothesis: Hypothesis) -> list[str]:
         return []
     return [
         f"outcome and predictor are computed from the same network ('{network}'): "
-        "they go together by construction, and p says nothing about people"
+        "they go together by construction, so a small p may say nothing about people"
     ]
 
 

@@ -158,7 +158,7 @@ def test_outcome_and_predictor_of_one_network_go_together_by_construction() -> N
     sample = draw_sample(cohort_of(persons, columns=columns), asked, visit="", family="all")
     together = (
         "outcome and predictor are computed from the same network ('conn'): "
-        "they go together by construction, and p says nothing about people"
+        "they go together by construction, so a small p may say nothing about people"
     )
     told = [together in design.notes for design in make_designs(sample, asked, options)]
     assert told == [True, False, False, False]
