@@ -13,19 +13,27 @@ Array = NDArray[np.float64]
 
 
 def person_figure(finding: Finding, predictor: str, outcome: str) -> Drawing:
-    """Within-site, adjusted values of everyone, the slope, and the slopes its interval allows."""
+    """Values of everyone as they were compared, the slope, and the slopes its interval allows."""
     figure, axes = blank(5.2, 3.9)
     x, y = ordered(finding)
     draw_axes_at_zero(axes)
     draw_slope(axes, finding, x)
     axes.plot(x, y, "o", ms=5.2, mfc=MAIN, mec=PAPER, mew=0.7, alpha=0.8, ls="none")
-    axes.set_xlabel(f"{predictor}\n(less the site's mean, adjusted)")
-    axes.set_ylabel(f"{outcome}\n(less the site's mean, adjusted)")
+    axes.set_xlabel(f"{predictor}\n({treated(finding)})")
+    axes.set_ylabel(f"{outcome}\n({treated(finding)})")
+    mean = "the site's mean" if finding.n_sites > 1 else "the mean"
     alternative = (
         f"One dot for each of {finding.n} people: {predictor} across, {outcome} up, both as differences from "
-        f"the site's mean. A line shows the fitted slope, a band the slopes inside the interval."
+        f"{mean}. A line shows the fitted slope, a band the slopes inside the interval."
     )
     return Drawing(figure, alternative)
+
+
+def treated(finding: Finding) -> str:
+    """What was done to the values that are drawn."""
+    if finding.n_sites > 1:
+        return f"less the site's mean{', adjusted' if finding.hypothesis.adjust else ''}"
+    return "adjusted" if finding.hypothesis.adjust else "less the mean"
 
 
 def ordered(finding: Finding, chosen: NDArray[np.bool_] | None = None) -> tuple[Array, Array]:

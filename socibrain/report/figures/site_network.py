@@ -218,7 +218,7 @@ def _alternative(site: DrawnSite, size_label: str) -> str:
     sizes = f", in three sizes that go up with {size_label}" if size_label else ""
     hollow = "" if site.few_silent or site.answered.all() else "people who did not answer are hollow; "
     return (
-        f"Network of one site by the question {site.question}: a shape for each person{sizes}; {hollow}"
+        f"Network by the question {site.question}: a shape for each person{sizes}; {hollow}"
         "people tied to nobody stand below."
     )
 
