@@ -39,6 +39,21 @@ def short(value: float) -> str:
     return f"−{text}" if value < 0 else text
 
 
+def evenly(values: Sequence[float]) -> list[str]:
+    """The numbers of one column, all with the decimals that give the largest three telling digits.
+
+    >>> evenly([0.5, 0.0123, 0.0001, float("nan")]), evenly([12.0, 7.0])
+    (['0.500', '0.012', '<0.001', '–'], ['12', '7'])
+    """
+    known = [abs(value) for value in values if math.isfinite(value)]
+    largest = max(known, default=0.0)
+    places = max(0, 2 - math.floor(math.log10(largest))) if largest else 0
+    if all(value == round(value) for value in known):
+        places = 0
+    least = 10.0**-places
+    return [f"<{least:.{places}f}" if 0 < value < least / 2 else decimal(value, places) for value in values]
+
+
 def count(value: float) -> str:
     """A whole number with its thousands apart.
 

@@ -6,10 +6,10 @@ from dataclasses import dataclass
 from importlib.resources import files
 
 from jinja2 import Environment, PackageLoader, StrictUndefined
-from markupsafe import Markup
+from markupsafe import Markup, escape
 
 from socibrain.link.finding import Finding, Findings
-from socibrain.report import tables
+from socibrain.report import losses, tables
 from socibrain.report.figures.by_site import drawn_sites
 from socibrain.report.figures.look import as_svg, colour_variables, our_look
 from socibrain.report.gallery import (
@@ -21,7 +21,7 @@ from socibrain.report.gallery import (
     split_in_two,
 )
 from socibrain.report.material import ReportInput
-from socibrain.report.methods import describe_methods
+from socibrain.report.methods import columns_used, describe_methods
 from socibrain.report.provenance import read_record
 from socibrain.report.words import Answer, answer, spoken
 
@@ -56,6 +56,8 @@ def render_report(material: ReportInput) -> str:
         trim_blocks=True,
         lstrip_blocks=True,
     )
+    room.filters["breakable"] = _breakable
+    named = [each.name for each in columns_used(findings, cohort.columns)] if findings else None
     question = network_position(material)[0] if material.questions else ""
     site = network_site(material)
     return room.get_template("page.html.j2").render(
@@ -70,11 +72,13 @@ def render_report(material: ReportInput) -> str:
         answered=_answered(findings, material),
         glance=tables.glance(material),
         sites=tables.site_rows(material, question),
-        exclusions=tables.exclusion_rows(cohort.ledger),
-        site_losses=tables.site_loss_rows(cohort.ledger, cohort.columns),
-        left_out=tables.left_out_rows(findings, cohort.columns) if findings else None,
+        exclusions=losses.exclusion_rows(cohort.ledger),
+        site_losses=losses.site_loss_rows(cohort.ledger, cohort.columns, named),
+        other_losses=losses.other_losses(cohort.ledger, named) if named is not None else 0,
+        left_out=losses.left_out_rows(findings, cohort.columns) if findings else None,
+        analysed=losses.analysed(findings) if findings else [],
         finding_table=tables.finding_rows(findings, cohort.columns) if findings else None,
-        problems=tables.problem_rows(cohort.problems),
+        problems=losses.problem_rows(cohort.problems),
         methods=describe_methods(material),
         provenance=read_record(material),
         many_sites=tables.MANY,
@@ -84,6 +88,11 @@ def render_report(material: ReportInput) -> str:
 def _draw(figures: Gallery) -> dict[str, Markup]:
     with our_look():
         return {name: Markup(as_svg(draw(), name)) for name, draw in figures.items()}
+
+
+def _breakable(name: str) -> Markup:
+    """A name that may be broken behind its underscores, nowhere else."""
+    return escape(name).replace("_", Markup("_<wbr>"))
 
 
 def _style() -> Markup:

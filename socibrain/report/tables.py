@@ -3,29 +3,21 @@
 from __future__ import annotations
 
 import math
-import re
-from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass
-
-import pandas as pd
 
 from socibrain.cohort.table import Column
 from socibrain.link.finding import Finding, Findings
 from socibrain.measures.catalogue import all_measures
 from socibrain.report.material import ReportInput
-from socibrain.report.notation import FEW, breakdown, count, decimal, level, p_value, share, short
-from socibrain.report.words import BADGES, answer, spoken
+from socibrain.report.notation import FEW, breakdown, count, decimal, evenly, level, p_value, share, short
+from socibrain.report.words import BADGES, answer, titled
 
 MANY = 40
 """Rows after which a table of sites is cut."""
 
 SITE_MEASURES = ("site_density", "site_reciprocity", "rich_club_p", "rich_club_from_degree")
 """Measures of a site that its row shows; sites.csv has them all."""
-SIDES = {"social": "questionnaire", "brain": "brain", "both": "both"}
-_NEXT_REASON = re.compile(r"; (?![^()]*\))")
-"""Between two reasons; a semicolon inside brackets belongs to its reason."""
-_COLUMN = re.compile(r"^'([^']+)'(?=: )")
 
 
 @dataclass(frozen=True)
@@ -60,7 +52,7 @@ def site_rows(material: ReportInput, question: str) -> Rows:
     """One row a site: people, share who answered, share with a usable brain, measures of the site."""
     sites = material.cohort.sites.sort_values("site").head(MANY)
     measures = [
-        (name, passport.label)
+        (name, f"{passport.label} (p)" if passport.unit == "p" else passport.label)
         for name, passport in ((f"{question}.{each}", all_measures()[each]) for each in SITE_MEASURES)
         if name in sites
     ]
@@ -69,75 +61,37 @@ def site_rows(material: ReportInput, question: str) -> Rows:
     headings = ["Site", "On the roster" if with_answers else "People"]
     headings += ["Answered"] * with_answers + ["Usable brain network"] * with_brain
     sizes = breakdown([_whole(value) for value in sites[whole]])
+    values = [
+        evenly(
+            [
+                float(value) if size != FEW else math.nan
+                for value, size in zip(sites[name], sizes, strict=True)
+            ]
+        )
+        for name, _ in measures
+    ]
     rows = []
-    for (_, site), size in zip(sites.iterrows(), sizes, strict=True):
+    for number, ((_, site), size) in enumerate(zip(sites.iterrows(), sizes, strict=True)):
         row = [str(site["site"]), size]
         if with_answers:
             row.append(share(_whole(site["answered"]), _whole(site[whole])))
         if with_brain:
             row.append(share(_whole(site["with_brain"]), _whole(site["people"])))
-        row += [short(float(site[name])) if size != FEW else "–" for name, _ in measures]
+        row += [column[number] for column in values]
         rows.append(tuple(row))
     return Rows((*headings, *(label for _, label in measures)), tuple(rows))
-
-
-def exclusion_rows(ledger: pd.DataFrame) -> Rows:
-    """People who go no further, by stage and reason; then people who lose one visit only."""
-    people = ledger[(ledger["person"].fillna("") != "") & ledger["side"].isin(list(SIDES))]
-    one_visit = people["visit"].fillna("") != ""
-    rows: list[tuple[str, ...]] = []
-    for part, what in ((people[~one_visit], ""), (people[one_visit], ", one visit")):
-        for (side, stage), group in part.groupby(["side", "stage"], sort=False):
-            rows += [
-                (SIDES[str(side)], f"{stage}{what}", reason, shown) for reason, shown in _by_reason(group)
-            ]
-    return Rows(("Side", "Not reached", "Reason", "People"), tuple(rows))
-
-
-def site_loss_rows(ledger: pd.DataFrame, columns: Mapping[str, Column]) -> Rows:
-    """Sites where a measure has no value for anybody."""
-    sites = ledger[ledger["person"].fillna("") == ""]
-    single = dict.fromkeys(zip(sites["stage"], sites["reason"], sites["site"], strict=True))
-    number = Counter((str(stage), str(reason)) for stage, reason, _ in single)
-    rows = [
-        (_sentence(spoken(stage, columns)), reason, count(times)) for (stage, reason), times in number.items()
-    ]
-    return Rows(("Measure without a value", "Reason", "Sites"), tuple(rows))
-
-
-def left_out_rows(findings: Findings, columns: Mapping[str, Column]) -> Rows:
-    """People whom a family of hypotheses had to leave out, by each reason that holds for them."""
-    single = [
-        (str(family), _with_label(reason, columns), str(person))
-        for family, person, told in findings.left_out[["family", "person", "reason"]].to_numpy().tolist()
-        for reason in _NEXT_REASON.split(str(told))
-    ]
-    table = pd.DataFrame(single, columns=["family", "reason", "person"])
-    rows = [
-        (str(family), reason, shown)
-        for family, group in table.groupby("family", sort=False)
-        for reason, shown in _by_reason(group)
-    ]
-    return Rows(("Family", "Reason", "People"), tuple(rows))
-
-
-def problem_rows(problems: pd.DataFrame) -> Rows:
-    """Faults found in the inputs, by kind."""
-    number = problems.groupby("kind", sort=False).size().sort_values(ascending=False, kind="stable")
-    shown = breakdown([int(places) for places in number])
-    rows = [(str(kind).replace("-", " "), places) for kind, places in zip(number.index, shown, strict=True)]
-    return Rows(("Kind of fault", "Places"), tuple(rows))
 
 
 def finding_rows(findings: Findings, columns: Mapping[str, Column]) -> Rows:
     """All hypotheses, one row each."""
     alpha = findings.options.alpha
+    several = any(each.n_sites > 1 for each in findings.findings)
     rows = [
         (
             each.hypothesis.id,
-            spoken(each.hypothesis.predictor, columns),
-            spoken(each.hypothesis.outcome, columns),
-            f"{each.n} / {each.n_sites}",
+            titled(each.hypothesis.predictor, columns),
+            titled(each.hypothesis.outcome, columns),
+            f"{each.n} / {each.n_sites}" if several else str(each.n),
             decimal(each.estimate),
             _interval(each.ci_low, each.ci_high),
             p_value(each.p_permutation, alpha),
@@ -147,8 +101,8 @@ def finding_rows(findings: Findings, columns: Mapping[str, Column]) -> Rows:
         for each in findings.findings
     ]
     headings = (
-        "Hypothesis", "Predictor", "Outcome", "People / sites", "Slope", f"{level(alpha)} interval",
-        "p", "p in family", "Answer",
+        "Hypothesis", "Predictor", "Outcome", "People / sites" if several else "People", "Slope",
+        f"{level(alpha)} interval", "p", "p in family", "Answer",
     )  # fmt: skip
     return Rows(headings, tuple(rows))
 
@@ -170,7 +124,9 @@ def numbers_of(finding: Finding, findings: Findings) -> list[tuple[str, str]]:
             f"{count(finding.shuffles)}{', all there are' if finding.exhaustive else ' shuffles'}",
         ),
         ("Smallest p possible", p_value(finding.smallest_p, alpha)),
-        ("People / sites", f"{finding.n} / {finding.n_sites}"),
+        ("People / sites", f"{finding.n} / {finding.n_sites}")
+        if finding.n_sites > 1
+        else ("People", count(finding.n)),
         ("Site variance / residual variance", short(finding.variance_ratio)),
     ]
     if math.isfinite(finding.contextual):
@@ -181,7 +137,9 @@ def numbers_of(finding: Finding, findings: Findings) -> list[tuple[str, str]]:
             )
         )
     if finding.check:
-        rows.append(("Largest difference from statsmodels", f"{finding.check.largest_difference:.1e}"))
+        rows.append(
+            ("Largest difference from the same fit by statsmodels", f"{finding.check.largest_difference:.1e}")
+        )
     return [(what, number) for what, number in rows if number != "–"]
 
 
@@ -196,20 +154,3 @@ def _interval(low: float, high: float, places: int = 2) -> str:
 def _whole(value: object) -> int:
     number = float(str(value))
     return 0 if math.isnan(number) else round(number)
-
-
-def _with_label(reason: str, columns: Mapping[str, Column]) -> str:
-    """A reason that begins with a quoted column name, with the column's label there."""
-    return _COLUMN.sub(lambda found: _sentence(spoken(found[1], columns)), reason)
-
-
-def _by_reason(people: pd.DataFrame) -> list[tuple[str, str]]:
-    """Each reason with its people, most frequent first; a person counts once a reason."""
-    number = people.groupby("reason", sort=False)["person"].nunique()
-    number = number.sort_values(ascending=False, kind="stable")
-    shown = breakdown([int(each) for each in number])
-    return [(str(reason), each) for reason, each in zip(number.index, shown, strict=True)]
-
-
-def _sentence(text: str) -> str:
-    return text[:1].upper() + text[1:]

@@ -18,6 +18,7 @@ from socibrain.report.methods import describe_methods
 from socibrain.report.page import render_report
 from socibrain.report.tables import site_rows
 from tests.report.made_study import (
+    RECORD,
     SITES,
     finding,
     findings,
@@ -26,7 +27,7 @@ from tests.report.made_study import (
     typical_findings,
 )
 
-EMPTY_ELEMENTS = {"meta", "br", "hr", "img", "link", "input"}
+EMPTY_ELEMENTS = {"meta", "br", "hr", "img", "link", "input", "wbr"}
 
 
 class Outline(HTMLParser):
@@ -235,10 +236,42 @@ def test_methods_follow_the_options_and_the_record(outline: Outline) -> None:
     assert "Burt (1992)" in outline.text
 
 
+def test_methods_quote_what_people_were_asked() -> None:
+    says = dict(RECORD["study_says"])  # type: ignore[call-overload]
+    says["questionnaire"] = {"questions": {"advice": {"asks": "Whom do you ask?", "cap": 6}}}
+    methods = describe_methods(made_material(record={**RECORD, "study_says": says}))
+    assert "Question “advice” asked: “Whom do you ask?”, with up to 6 names." in methods.paragraphs[0]
+
+
+def test_methods_say_that_families_are_corrected_apart() -> None:
+    two = findings([finding(), finding("others"), finding("own", family="own")])
+    words = "There are 3 tested hypotheses in 2 families: p is corrected within families, not across them."
+    assert words in describe_methods(made_material(findings=two)).paragraphs[2]
+    assert "families" not in describe_methods(made_material()).paragraphs[2]
+
+
+def test_references_hold_the_sources_of_the_measures_used() -> None:
+    methods = describe_methods(made_material())
+    assert {"Burt (1992).", "Guimerà & Amaral (2005)."} <= set(methods.references)
+    assert any(work.startswith("Freedman") for work in methods.references)
+    assert list(methods.references) == sorted(methods.references, key=str.casefold)
+
+
+def test_ids_break_behind_underscores_only(page: str) -> None:
+    one = finding("constraint_and_age")
+    text = render_report(made_material(findings=findings([one])))
+    assert '<th scope="row">constraint_<wbr>and_<wbr>age</th>' in text
+    assert "overflow-wrap: anywhere; min-width" not in page
+
+
 def test_methods_of_fixed_sites_do_not_speak_of_random_ones() -> None:
     fixed = replace(typical_findings(), options=replace(typical_findings().options, sites="fixed"))
     methods = describe_methods(made_material(findings=fixed))
-    assert "a linear model with sites as fixed effects" in methods.paragraphs[1]
+    assert "fitted by ordinary least squares with a level of its own for every site" in methods.paragraphs[1]
+    assert not any(
+        word in methods.paragraphs[1]
+        for word in ("random", "Satterthwaite", "split in the same way", "mean of the site")
+    )
     assert not any("Patterson" in work for work in methods.references)
 
 
@@ -256,6 +289,8 @@ def test_cautions_are_always_there(outline: Outline) -> None:
     for words in (
         "may be used to diagnose anybody, or to choose or rank people",
         "Associations are not causes.",
+        "for reasons not in the model, p is too small; where the outcome spreads wider at one end of the "
+        "predictor, p can be wrong, mostly too small.",
         "People who were named did not all consent to be.",
         "ethics board, local law and licensed practitioners",
     ):
@@ -292,5 +327,5 @@ def test_missing_values_of_a_site_are_dashes() -> None:
     cohort = made_cohort()
     sites = cohort.sites.assign(**{"advice.rich_club_p": np.nan})
     rows = site_rows(made_material(cohort=replace(cohort, sites=sites)), "advice")
-    assert rows.headings[-1] == "Rich-club test"
+    assert rows.headings[-1] == "Rich-club test (p)"
     assert {row[-1] for row in rows.rows} == {"–"}

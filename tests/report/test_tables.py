@@ -1,46 +1,30 @@
-"""Tables: counted by hand, each person once, small cells hidden."""
+"""Tables of numbers: what their columns hold, as a reader sees them."""
 
 from __future__ import annotations
 
 from dataclasses import replace
 
-import pandas as pd
-
-from socibrain.report.tables import exclusion_rows, left_out_rows, site_loss_rows
-from tests.report.made_study import COLUMNS, finding, findings
-
-LEDGER = ["stage", "side", "person", "site", "visit", "reason"]
+from socibrain.report.tables import finding_rows, numbers_of, site_rows
+from tests.report.made_study import COLUMNS, SITES, finding, findings, made_cohort, made_material
 
 
-def test_a_lost_visit_is_told_apart_from_a_lost_person() -> None:
-    rows = [("passed quality", "brain", f"p{k}", "x", "", "moved") for k in range(6)]
-    rows += [("passed quality", "brain", f"q{k}", "x", "2", "moved") for k in range(5)]
-    rows += [("passed quality", "brain", "q0", "x", "3", "moved")]
-    rows += [("all", "link", "p0", "x", "", "no age")]
-    assert exclusion_rows(pd.DataFrame(rows, columns=LEDGER)).rows == (
-        ("brain", "passed quality", "moved", "6"),
-        ("brain", "passed quality, one visit", "moved", "5"),
-    )
+def test_numbers_of_a_site_column_have_the_same_decimals() -> None:
+    cohort = made_cohort()
+    p = [0.5, 0.0123, 0.0002, *[0.25] * (len(SITES) - 3)]
+    material = made_material(cohort=replace(cohort, sites=cohort.sites.assign(**{"advice.rich_club_p": p})))
+    table = site_rows(material, "advice")
+    assert table.headings[-1] == "Rich-club test (p)"
+    assert [row[-1] for row in table.rows][:4] == ["0.500", "0.012", "<0.001", "0.250"]
 
 
-def test_sites_without_a_value_are_counted_once() -> None:
-    rows = [("advice.constraint", "social", "", site, "", "nobody named") for site in ("a", "b", "b")]
-    assert site_loss_rows(pd.DataFrame(rows, columns=LEDGER), COLUMNS).rows == (
-        ("Constraint (advice)", "nobody named", "2"),
-    )
+def test_the_table_of_findings_names_measures_by_their_labels() -> None:
+    row = finding_rows(findings([finding()]), COLUMNS)
+    assert row.headings[:4] == ("Hypothesis", "Predictor", "Outcome", "People / sites")
+    assert row.rows[0][:4] == ("brokers", "Constraint (advice)", "Mean participation (rest)", "168 / 12")
 
 
-def test_people_are_counted_at_each_reason_that_holds_for_them() -> None:
-    both = "did not answer; 'age': missing; 'advice.constraint': undefined (nobody; or nothing)"
-    told = [both] * 7 + ["'age': missing"] * 6
-    left = pd.DataFrame(
-        {"family": "all", "person": [f"p{k}" for k in range(13)], "site": "x", "reason": told}
-    )
-    left.loc[13] = ["all", "p13", "x", "no site"]
-    rows = left_out_rows(replace(findings([finding()]), left_out=left), COLUMNS).rows
-    assert rows == (
-        ("all", "Age: missing", "13"),
-        ("all", "did not answer", "≥5"),
-        ("all", "Constraint (advice): undefined (nobody; or nothing)", "7"),
-        ("all", "no site", "<5"),
+def test_the_difference_from_statsmodels_says_of_what_it_is() -> None:
+    one = finding()
+    assert ("Largest difference from the same fit by statsmodels", "3.1e-07") in numbers_of(
+        one, findings([one])
     )
