@@ -115,7 +115,7 @@ def link(plan: Path, out: Path | None, workers: int | None, as_json: bool) -> No
             click.echo("\n  ".join(finding_lines(finding, alpha=answer.findings.options.alpha)))
         click.echo(f"{out / 'findings.csv'}")
     if answer.refusals:
-        _tell(told(answer.refusals))
+        _tell(told(answer.refusals, in_full=True))
         raise SystemExit(DATA_REFUSED)
     if (answer.table["status"] == "failed").any():
         raise SystemExit(SOME_FAILED)
