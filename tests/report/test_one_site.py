@@ -93,7 +93,7 @@ def test_axes_say_what_was_done_to_the_values() -> None:
         assert label == "x\n(less the site's mean, adjusted)"
         label = person_figure(finding(), "x", "y").figure.axes[0].get_xlabel()
         assert label == "x\n(less the site's mean)"
-        assert null_figure(plain).figure.axes[0].get_xlabel() == "t when people are shuffled among all"
+        assert null_figure(plain).figure.axes[0].get_xlabel() == "t when all people are shuffled"
         assert null_figure(of_sites).figure.axes[0].get_xlabel() == "t when people are shuffled within sites"
 
 

@@ -29,8 +29,8 @@ def null_figure(finding: Finding) -> Drawing:
         f"observed {decimal(finding.statistic)}", (finding.statistic, 0.96), (6 if side == "left" else -6, 0),
         xycoords=axes.get_xaxis_transform(), textcoords="offset points", color=INK, size=9, ha=side, va="top",
     )  # fmt: skip
-    where = "within sites" if finding.n_sites > 1 else "among all"
-    axes.set_xlabel(f"t when people are shuffled {where}")
+    several = finding.n_sites > 1
+    axes.set_xlabel(f"t when {'people are shuffled within sites' if several else 'all people are shuffled'}")
     axes.set_yticks([])
     axes.spines["left"].set_visible(False)
     axes.tick_params(color=SOFT, length=3)
