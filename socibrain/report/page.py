@@ -125,11 +125,11 @@ def _two_values(finding: Finding, material: ReportInput) -> str:
 
 
 def _readings(finding: Finding, material: ReportInput) -> list[tuple[str, str]]:
-    """What higher values of the two measures mean: (label, reading)."""
+    """What higher values of the two measures mean: (measure, reading)."""
     columns = material.cohort.columns
     named = (finding.hypothesis.predictor, finding.hypothesis.outcome)
     return [
-        (columns[name].label, columns[name].reading)
+        (spoken(name, columns), columns[name].reading)
         for name in named
         if name in columns and columns[name].reading
     ]

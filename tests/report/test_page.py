@@ -257,6 +257,10 @@ def test_references_hold_the_sources_of_the_measures_used() -> None:
     assert list(methods.references) == sorted(methods.references, key=str.casefold)
 
 
+def test_captions_say_how_to_read_the_measures(outline: Outline) -> None:
+    assert "“Constraint” (advice): higher = contacts are tied to each other." in outline.text
+
+
 def test_ids_break_behind_underscores_only(page: str) -> None:
     one = finding("constraint_and_age")
     text = render_report(made_material(findings=findings([one])))
