@@ -54,7 +54,7 @@ PLACES_SHOWN = 3
 """How many places of one statement are named before the rest is only counted."""
 STATEMENTS_SHOWN = 5
 """How many statements of one kind are told before the faults left are only counted."""
-THE_REST = "`socibrain audit` writes all of them to problems.csv once the people table can be read"
+THE_REST = "`socibrain audit` writes all of them to problems.csv"
 
 
 def told(faults: Iterable[Fault], *, in_full: bool = False) -> str:

@@ -355,3 +355,12 @@ def test_a_record_that_is_none(study: MadeStudy, content: str) -> None:
 def test_no_run_to_report(study: MadeStudy) -> None:
     message = (str(study.out), "there is no finished run here", "socibrain link")
     assert_told(call("report", str(study.out)), 4, message)
+
+
+def test_an_audit_writes_all_problems_even_where_nobody_can_be_read(study: MadeStudy) -> None:
+    rows = study.text("people.tsv")
+    study.write("people.tsv", rows + "".join(f"n0{number}\tnorth\tcrew\t40\n" for number in range(1, 9)))
+    told = study.run("audit")
+    assert told.code == 4
+    assert "and 3 more of this kind: `socibrain audit` writes all of them to problems.csv" in told.err
+    assert len(pd.read_csv(study.out / "problems.csv")) == 8

@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 
 import pandas as pd
 
+from socibrain.cohort.assemble import problem_table
 from socibrain.cohort.audit import Audit
 from socibrain.cohort.table import Cohort
+from socibrain.errors import Fault
 from socibrain.link.finding import Findings
 from socibrain.run import dictionary
 from socibrain.run.crate import crate
@@ -19,6 +21,11 @@ Files = dict[str, bytes]
 def of_audit(audit: Audit) -> Files:
     """Files of an audit."""
     return _accounts(audit.ledger, audit.problems, audit.flow)
+
+
+def of_problems(faults: Iterable[Fault]) -> Files:
+    """All that can be told of a study whose people cannot be read."""
+    return _problems(problem_table([*faults]))
 
 
 def of_cohort(cohort: Cohort, findings: Findings | None = None) -> Files:
@@ -66,11 +73,16 @@ def with_record(files: Files, record: Mapping[str, object]) -> Files:
 
 def _accounts(ledger: pd.DataFrame, problems: pd.DataFrame, flow: pd.DataFrame) -> Files:
     """Who is left out, what is wrong, and how it adds up."""
-    return {
+    return _problems(problems) | {
         "ledger.csv": csv_bytes(ledger),
         "ledger.json": json_bytes(dictionary.in_words(dictionary.LEDGER_SAYS, ledger)),
-        "problems.csv": csv_bytes(problems),
-        "problems.json": json_bytes(dictionary.in_words(dictionary.PROBLEMS_SAY, problems)),
         "flow.csv": csv_bytes(flow),
         "flow.json": json_bytes(dictionary.in_words(dictionary.FLOW_SAYS, flow)),
+    }
+
+
+def _problems(problems: pd.DataFrame) -> Files:
+    return {
+        "problems.csv": csv_bytes(problems),
+        "problems.json": json_bytes(dictionary.in_words(dictionary.PROBLEMS_SAY, problems)),
     }

@@ -102,7 +102,12 @@ def audit(
     study = study if isinstance(study, Study) else read_study(study)
     folder = _opened(out, study)
     faults = Faults()
-    gathered = gather(study, faults)
+    try:
+        gathered = gather(study, faults)
+    except DataRefused:
+        if folder:
+            folder.write(outputs.of_problems(faults))
+        raise
     found = audit_study(gathered, faults, version=VERSION, workers=workers or cpu_count(), done=_teller(tell))
     if folder:
         folder.write(outputs.of_audit(found))
