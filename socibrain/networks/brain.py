@@ -18,6 +18,9 @@ Array = NDArray[np.float64]
 NEAR = 1e-6
 """Largest asymmetry that is taken for rounding, as a share of the largest absolute weight."""
 
+BOUNDED = ("correlation", "partial_correlation")
+"""Edges whose weights lie in -1 to 1."""
+
 
 @dataclass(frozen=True)
 class BrainNetwork:
@@ -188,7 +191,7 @@ def _within_range(weights: Array, rules: BrainInput, file: str, faults: Faults) 
                    f"the weight is {weights[i, j]:.6g}{more}",
                    "compute the matrix again, or write `negative: drop` or `negative: absolute`")  # fmt: skip
         return False
-    if "correlation" in rules.edges and np.abs(weights).max() > 1 + NEAR:
+    if rules.edges in BOUNDED and np.abs(weights).max() > 1 + NEAR:
         i, j = np.unravel_index(np.argmax(np.abs(weights)), weights.shape)
         faults.add(file, f"row {i + 1}, column {j + 1}", "not-a-correlation",
                    f"the weight {weights[i, j]:.6g} is outside -1 to 1",

