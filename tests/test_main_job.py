@@ -204,3 +204,23 @@ def test_a_run_that_had_other_inputs_is_refused(
     del record["inputs"]["aliases.tsv"]
     (fewer / "run.json").write_text(json.dumps(record), encoding="utf-8")
     assert "aliases.tsv  was not there when" in refused(fewer, capsys)
+
+
+def test_decisions_count_once_they_are_made(
+    tmp_path: Path, answer: Answer, capsys: pytest.CaptureFixture[str]
+) -> None:
+    """Names that wait in the list change nothing; a decision does."""
+    for name in ("demo_cohort", "analyses"):
+        shutil.copytree(STUDY.parents[1] / name, tmp_path / name, ignore=shutil.ignore_patterns("private"))
+    plan, run = tmp_path / "analyses" / "brokers" / "plan.yaml", tmp_path / "run"
+    study = tmp_path / "demo_cohort" / "study.yaml"
+    study.write_text(study.read_text(encoding="utf-8").replace("restarts: 50", "restarts: 2"))
+    socibrain.link(plan, out=run)
+    socibrain.audit(study, out=tmp_path / "audit")
+    assert report_run(run).is_file()
+    waiting = tmp_path / "demo_cohort" / "private" / "decisions.csv"
+    first, row, *rest = waiting.read_text(encoding="utf-8").splitlines()
+    written, site, _, score, suggestion = row.split(",")
+    decided = ",".join([written, site, "nobody", score, suggestion])
+    waiting.write_text("\n".join([first, decided, *rest]) + "\n", encoding="utf-8")
+    assert "holds other decisions than when" in refused(run, capsys)

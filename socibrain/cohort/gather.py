@@ -10,7 +10,7 @@ from socibrain.errors import Faults
 from socibrain.networks.social import SocialNetwork, SocialReading, build_social_networks
 from socibrain.sources.answered import read_answered
 from socibrain.sources.answers import read_answers
-from socibrain.sources.decisions import DECISIONS, OpenName
+from socibrain.sources.decisions import OpenName
 from socibrain.sources.exclusions import LeftOut, read_exclusions, read_rule_values
 from socibrain.sources.matrix_files import find_matrices
 from socibrain.sources.names import read_names
@@ -96,10 +96,10 @@ def gather(study: Study, faults: Faults) -> Gathered:
 
 
 def input_files(gathered: Gathered) -> list[str]:
-    """Every file that was read, as the study writes it, without repeats."""
+    """Every file that was read but the decisions, as the study writes it, without repeats."""
     study = gathered.study
     sidecar = study.says.people.file.rsplit(".", 1)[0] + ".json"
-    files = [*study.tables, sidecar, DECISIONS]
+    files = [*study.tables, sidecar]
     return list(dict.fromkeys([*files, *(matrix.file for matrix in gathered.matrices)]))
 
 

@@ -10,6 +10,7 @@ from typing import Any
 
 from socibrain.errors import DataRefused, Fault, Refusal
 from socibrain.run.record import VERSION
+from socibrain.sources.decisions import DECISIONS
 from socibrain.tasks.finished import file_digest
 
 ANEW = "answer the plan anew: socibrain link"
@@ -66,11 +67,14 @@ def unchanged_plan(run: Path, record: Mapping[str, Any]) -> Path:
 
 
 def refuse_other_inputs(run: Path, was: Mapping[str, Any], now: Mapping[str, Any]) -> None:
-    """Raise `RunChanged` with every input that the run did not have, or has no longer."""
+    """Raise `RunChanged` with every input that the run did not have or has no longer, or other decisions."""
     found = f"was not there when {run / 'run.json'} was made"
     added = sorted(now["inputs"].keys() - was["inputs"].keys())
     gone = sorted(was["inputs"].keys() - now["inputs"].keys())
     faults = [Fault(name, "", "added", found, ANEW) for name in added]
+    if was.get("decisions_digest") != now["decisions_digest"]:
+        found = f"holds other decisions than when {run / 'run.json'} was made"
+        faults.append(Fault(DECISIONS, "", "changed", found, ANEW))
     faults += [Fault(name, "", "gone", "is no longer read by the study", ANEW) for name in gone]
     if faults:
         raise RunChanged(*faults)

@@ -15,7 +15,8 @@ from pathlib import Path
 from socibrain.cohort.gather import Gathered, input_files
 from socibrain.plan.planfile import Plan
 from socibrain.run.folder import RunFolder
-from socibrain.tasks.finished import file_digest
+from socibrain.sources.decisions import decided_rows
+from socibrain.tasks.finished import digest, file_digest
 
 VERSION = installed("socibrain")
 COMPUTES_WITH = ("numpy", "scipy", "pandas", "igraph", "statsmodels", "networkx", "matplotlib")
@@ -62,6 +63,7 @@ def make_record(
             for name in input_files(gathered)
             if study.path(name).is_file()
         },
+        "decisions_digest": digest(decided_rows(study)),
         "started": clock.started,
         "seconds": clock.seconds,
     }

@@ -72,6 +72,16 @@ def read_decisions(study: Study, roster: tuple[RosterEntry, ...], faults: Faults
     return decisions
 
 
+def decided_rows(study: Study) -> list[tuple[str, str, str]]:
+    """What was decided so far: written, site, person of every row that has a person, sorted.
+
+    Rows that wait say nothing yet, so a run is the same with and without them.
+    """
+    table = _read(study, Faults())
+    rows = [(row["written"], _site(row), row["person"]) for _, row in table or ()]
+    return sorted(row for row in rows if not is_missing(row[2]))
+
+
 def write_suggestions(study: Study, open_names: Iterable[OpenName], faults: Faults) -> int:
     """Add the texts that wait for a human to the decision file; how many were added.
 
