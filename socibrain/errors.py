@@ -105,8 +105,8 @@ class Faults:
     (1, True)
     """
 
-    def __init__(self) -> None:
-        self._found: dict[Fault, None] = {}
+    def __init__(self, *found: Fault) -> None:
+        self._found: dict[Fault, None] = dict.fromkeys(found)
 
     def add(self, file: str, place: str, kind: str, found: str, mend: str, *, grave: bool = True) -> None:
         """Put one fault on record; what two readers of one file find alike is one fault."""

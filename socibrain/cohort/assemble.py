@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterable, Sequence
 from dataclasses import asdict
 from pathlib import Path
 
@@ -42,7 +42,7 @@ def measure_study(
         gathered, version=version, memory=memory, workers=workers, measuring=measuring, done=done
     )
     found = all_faults(faults, brains)
-    refuse_grave(found)
+    found.refuse_if_grave()
     says = gathered.study.says
     asked = says.questionnaire
     positions = measure_positions(
@@ -54,7 +54,8 @@ def measure_study(
         workers=workers,
     )
     branches, leavings = stand(gathered, brains)
-    usable = [brain for brain in brains if _key(brain) not in lost_scans(gathered, brains)]
+    lost = lost_scans(gathered, brains)
+    usable = [brain for brain in brains if brain.key not in lost]
     persons = _persons(gathered, positions, usable)
     return Cohort(
         persons=persons,
@@ -89,15 +90,15 @@ def read_brains(
     return measure_brains(tasks, workers=workers, done=lambda count: done(count, len(tasks)))
 
 
-def all_faults(gathering: Faults, brains: Sequence[MeasuredBrain]) -> list[Fault]:
+def all_faults(gathering: Faults, brains: Sequence[MeasuredBrain]) -> Faults:
     """What gathering found, what is wrong with each matrix, and with their sizes beside each other."""
     sizes: dict[str, list[tuple[str, int]]] = {}
     for brain in brains:
         if brain.region_names:
             sizes.setdefault(brain.origin.source, []).append((brain.origin.file, len(brain.region_names)))
-    apart = Faults()
-    refuse_odd_sizes(sizes, apart)
-    return [*gathering, *(fault for brain in brains for fault in brain.faults), *apart]
+    found = Faults(*gathering, *(fault for brain in brains for fault in brain.faults))
+    refuse_odd_sizes(sizes, found)
+    return found
 
 
 def stand(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[list[Branch], list[Leaving]]:
@@ -115,18 +116,9 @@ def stand(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[list[Bra
     return branches, leavings
 
 
-def problem_table(faults: Sequence[Fault]) -> pd.DataFrame:
+def problem_table(faults: Iterable[Fault]) -> pd.DataFrame:
     """All faults, one row each."""
     return pd.DataFrame([asdict(fault) for fault in faults], columns=PROBLEM_COLUMNS)
-
-
-def refuse_grave(found: Sequence[Fault]) -> None:
-    """Raise `DataRefused` with the grave faults, when there are any."""
-    grave = Faults()
-    for fault in found:
-        if fault.grave:
-            grave.add(fault.file, fault.place, fault.kind, fault.found, fault.mend)
-    grave.refuse_if_grave()
 
 
 def _persons(gathered: Gathered, positions: Positions, usable: Sequence[MeasuredBrain]) -> pd.DataFrame:
@@ -205,7 +197,3 @@ def _sites(gathered: Gathered, positions: Positions, persons: pd.DataFrame) -> p
     table = pd.DataFrame.from_dict(rows, orient="index")
     table.index.name = "site"
     return table.join(positions.sites).reset_index()
-
-
-def _key(brain: MeasuredBrain) -> tuple[str, str, str]:
-    return brain.origin.source, brain.origin.person, brain.origin.visit

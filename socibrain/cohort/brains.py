@@ -52,6 +52,11 @@ class MeasuredBrain:
     partition: NDArray[np.int64]
     region_names: tuple[str, ...]
 
+    @property
+    def key(self) -> tuple[str, str, str]:
+        """Input, person and visit."""
+        return self.origin.source, self.origin.person, self.origin.visit
+
 
 def brain_measures(scale: str) -> list[Measure]:
     """Measures of the brain side at one scale."""

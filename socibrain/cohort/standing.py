@@ -43,8 +43,9 @@ def social_branch(gathered: Gathered) -> tuple[Branch, list[Leaving]]:
 def brain_branch(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[Branch, list[Leaving]]:
     """Invited, scanned, passed quality (at least one usable network)."""
     reasons = lost_scans(gathered, brains)
-    usable = {b.origin.person for b in brains if _key(b) not in reasons}
-    scanned = {b.origin.person for b in brains} & gathered.scanned
+    usable = {b.origin.person for b in brains if b.key not in reasons}
+    with_file = {b.origin.person for b in brains}
+    scanned = with_file & gathered.scanned
     leavings = [
         Leaving(INVITED, "brain", person, gathered.site(person), "", "not invited to be scanned")
         for person in gathered.people.ids
@@ -53,11 +54,10 @@ def brain_branch(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[B
     for person in sorted(gathered.invited):
         site = gathered.site(person)
         if person not in scanned:
-            has_file = any(b.origin.person == person for b in brains)
             reason = (
                 "not scanned" if person not in gathered.scanned else "scanned, but there is no network file"
             )
-            reason = "has a file, but the study says not scanned" if has_file else reason
+            reason = "has a file, but the study says not scanned" if person in with_file else reason
             leavings.append(Leaving(SCANNED, "brain", person, site, "", reason))
         elif person not in usable:
             mine = [reason for (_, who, _), reason in sorted(reasons.items()) if who == person]
@@ -74,7 +74,7 @@ def brain_branch(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> tuple[B
 def single_scans(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> list[Leaving]:
     """Single visits, or single inputs of a visit, that cannot be used of people with a scan that can."""
     lost = lost_scans(gathered, brains)
-    usable = {_key(brain) for brain in brains} - lost.keys()
+    usable = {brain.key for brain in brains} - lost.keys()
     for _, person, visit in usable:
         for source in gathered.study.says.brain:
             if (source, person, visit) not in usable:
@@ -103,9 +103,5 @@ def lost_scans(gathered: Gathered, brains: Sequence[MeasuredBrain]) -> dict[tupl
         if not reason and person not in gathered.invited:
             reason = "scanned, but not invited"
         if reason:
-            lost[_key(brain)] = reason
+            lost[brain.key] = reason
     return lost
-
-
-def _key(brain: MeasuredBrain) -> tuple[str, str, str]:
-    return brain.origin.source, brain.origin.person, brain.origin.visit

@@ -25,7 +25,7 @@ def of_audit(audit: Audit) -> Files:
 
 def of_problems(faults: Iterable[Fault]) -> Files:
     """All that can be told of a study whose people cannot be read."""
-    return _problems(problem_table([*faults]))
+    return _problems(problem_table(faults))
 
 
 def of_cohort(cohort: Cohort, findings: Findings | None = None) -> Files:

@@ -10,6 +10,7 @@ from collections.abc import Sequence
 from socibrain.errors import Faults
 from socibrain.sources.records import MatrixFile
 from socibrain.sources.study import Study
+from socibrain.sources.tables import loose_form
 
 RELATION = "_relmat.tsv"
 """Ending of a relation matrix in the BIDS draft: its entities may stand in any order."""
@@ -152,4 +153,4 @@ def _bare(person: str) -> str:
     >>> _bare("sub-007") == _bare("7"), _bare("A07b") == _bare("a7b"), _bare("70") == _bare("7")
     (True, True, False)
     """
-    return re.sub(r"(?<!\d)0+(?=\d)", "", person.casefold().removeprefix("sub-"))
+    return loose_form(person.casefold().removeprefix("sub-"))
